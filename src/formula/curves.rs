@@ -1,0 +1,1 @@
+//! Interpolating functions of an entry.

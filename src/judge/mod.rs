@@ -1,0 +1,5 @@
+//! Margins to verdicts, verdicts to an assessment.
+
+pub mod assessment;
+
+pub use assessment::Assessment;

@@ -1,0 +1,24 @@
+//! Screens descriptions of hypothesised organisms against published budgets and scaling laws.
+//!
+//! The modules stand in the order in which data flows; a module uses only those above it.
+//!
+//! ```text
+//! candidate.yaml ──┐
+//!                  ├─ read ─ resolve ─ sample ─ evaluate ─ judge ─ report
+//! catalogs/**.yaml ┘         (plan)    (blocks)  (margins)  (verdicts)
+//! ```
+//!
+//! Everything that is science lives in `catalogs/` as data; everything here is machinery that knows no biology.
+
+pub mod candidate;
+pub mod catalog;
+pub mod cli;
+pub mod formula;
+pub mod judge;
+pub mod math;
+pub mod plan;
+pub mod quantity;
+pub mod report;
+pub mod run;
+pub mod study;
+pub mod text;

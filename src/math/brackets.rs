@@ -1,0 +1,1 @@
+//! Roots inside a bracket.

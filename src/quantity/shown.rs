@@ -1,0 +1,1 @@
+//! Numbers as people read them: units people use, significant digits that the uncertainty supports.

@@ -10,15 +10,4 @@
 //!
 //! Everything that is science lives in `catalogs/` as data; everything here is machinery that knows no biology.
 
-pub mod candidate;
-pub mod catalog;
-pub mod cli;
-pub mod formula;
-pub mod judge;
 pub mod math;
-pub mod plan;
-pub mod quantity;
-pub mod report;
-pub mod run;
-pub mod study;
-pub mod text;

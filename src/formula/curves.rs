@@ -1,1 +1,0 @@
-//! Interpolating functions of an entry.

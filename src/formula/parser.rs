@@ -1,1 +1,0 @@
-//! Parsing, by precedence.

@@ -1,1 +1,0 @@
-//! Characters to tokens.

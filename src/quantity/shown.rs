@@ -1,1 +1,0 @@
-//! Numbers as people read them: units people use, significant digits that the uncertainty supports.

@@ -11,3 +11,4 @@
 //! Everything that is science lives in `catalogs/` as data; everything here is machinery that knows no biology.
 
 pub mod math;
+pub mod text;

@@ -12,3 +12,4 @@
 
 pub mod math;
 pub mod text;
+pub mod quantity;

@@ -13,3 +13,4 @@
 pub mod math;
 pub mod text;
 pub mod quantity;
+pub mod formula;

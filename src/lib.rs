@@ -14,3 +14,4 @@ pub mod math;
 pub mod text;
 pub mod quantity;
 pub mod formula;
+pub mod catalog;

@@ -1,0 +1,164 @@
+//! The files of a catalogue: those inside the binary, and those of overlays.
+
+use std::path::Path;
+use std::sync::Arc;
+
+use include_dir::{Dir, include_dir};
+use sha2::{Digest, Sha256};
+
+use crate::text::{Problem, Problems, Source};
+
+static EMBEDDED: Dir<'_> = include_dir!("$CARGO_MANIFEST_DIR/catalogs");
+
+/// What a file of a catalogue holds.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
+pub(super) enum Holds {
+    /// `sources.yaml`
+    Sources,
+    /// `constants.yaml`
+    Constants,
+    /// `attributes.yaml`
+    Attributes,
+    /// `quantities.yaml`
+    Quantities,
+    /// `relations/*.yaml`
+    Relations,
+    /// `constraints/*.yaml`
+    Constraints,
+    /// `figures/*.yaml`
+    Figures,
+    /// `habitats/*.yaml`
+    Habitats,
+}
+
+/// Folders of the same shape that are not part of the rules: candidates to screen, organisms with known answers,
+/// and kinds, which no entry uses yet.
+const BESIDE: [&str; 3] = ["candidates", "controls", "kinds"];
+
+impl Holds {
+    fn of(path: &str) -> Option<Self> {
+        Some(match path.split_once('/') {
+            None => match path {
+                "sources.yaml" => Self::Sources,
+                "constants.yaml" => Self::Constants,
+                "attributes.yaml" => Self::Attributes,
+                "quantities.yaml" => Self::Quantities,
+                _ => return None,
+            },
+            Some((folder, file)) if !file.contains('/') => match folder {
+                "relations" => Self::Relations,
+                "constraints" => Self::Constraints,
+                "figures" => Self::Figures,
+                "habitats" => Self::Habitats,
+                _ => return None,
+            },
+            Some(_) => return None,
+        })
+    }
+}
+
+/// One file of a catalogue.
+#[derive(Clone, Debug)]
+pub(super) struct File {
+    /// What it holds.
+    pub(super) holds: Holds,
+    /// Its text.
+    pub(super) source: Arc<Source>,
+    /// Whether it came from an overlay.
+    pub(super) overlaid: bool,
+}
+
+/// The files inside the binary, in order of path.
+#[must_use]
+pub(super) fn embedded() -> Vec<File> {
+    let mut found = Vec::new();
+    collect_embedded(&EMBEDDED, &mut found);
+    found.sort_by(|a, b| a.source.name.cmp(&b.source.name));
+    found
+}
+
+fn collect_embedded(folder: &Dir<'_>, found: &mut Vec<File>) {
+    for file in folder.files() {
+        let path = file.path().to_string_lossy().replace('\\', "/");
+        if let (Some(holds), Some(text)) = (Holds::of(&path), file.contents_utf8()) {
+            let source = Arc::new(Source { name: format!("catalogs/{path}"), text: text.to_owned() });
+            found.push(File { holds, source, overlaid: false });
+        }
+    }
+    for folder in folder.dirs() {
+        collect_embedded(folder, found);
+    }
+}
+
+/// The YAML files of an overlay, in order of path. A YAML file that has no place in a catalogue is a problem.
+pub(super) fn overlay(folder: &Path, problems: &mut Problems) -> Vec<File> {
+    let mut found = Vec::new();
+    if folder.is_dir() {
+        collect_overlay(folder, "", &mut found, problems);
+    } else {
+        problems.push(Problem::whole(format!("overlay `{}` is not a folder", folder.display())).expected(
+            "a folder with the shape of a catalogue: quantities.yaml, relations/, constraints/, ...",
+        ));
+    }
+    if found.is_empty() && problems.is_empty() {
+        problems.push(
+            Problem::whole(format!("overlay `{}` holds no catalogue files", folder.display()))
+                .expected("quantities.yaml, sources.yaml, relations/*.yaml, constraints/*.yaml, ..."),
+        );
+    }
+    found
+}
+
+fn collect_overlay(root: &Path, below: &str, found: &mut Vec<File>, problems: &mut Problems) {
+    let folder = root.join(below);
+    let entries = match std::fs::read_dir(&folder) {
+        Ok(entries) => entries,
+        Err(error) => {
+            problems.push(Problem::whole(format!("cannot read the folder `{}`: {error}", folder.display())));
+            return;
+        }
+    };
+    let mut names: Vec<String> =
+        entries.flatten().map(|entry| entry.file_name().to_string_lossy().into_owned()).collect();
+    names.sort();
+    for name in names {
+        if name.starts_with('.') {
+            continue;
+        }
+        let path = if below.is_empty() { name.clone() } else { format!("{below}/{name}") };
+        let full = root.join(&path);
+        if full.is_dir() {
+            if below.is_empty() && !BESIDE.contains(&name.as_str()) {
+                collect_overlay(root, &path, found, problems);
+            }
+        } else if name.ends_with(".yaml") {
+            match Holds::of(&path) {
+                Some(holds) => match Source::from_file(&full) {
+                    Ok(source) => found.push(File { holds, source, overlaid: true }),
+                    Err(problem) => problems.push(problem),
+                },
+                None => problems.push(
+                    Problem::whole(format!("`{}` has no place in a catalogue", full.display())).expected(
+                        "quantities.yaml, attributes.yaml, constants.yaml, sources.yaml, or a file in relations/, \
+                         constraints/, figures/ or habitats/",
+                    ),
+                ),
+            }
+        }
+    }
+}
+
+/// SHA-256 over names and contents, hexadecimal: says which catalogue answered.
+#[must_use]
+pub(super) fn digest(files: &[File]) -> String {
+    let mut hasher = Sha256::new();
+    for file in files {
+        // The place of an overlay on this machine does not matter, what it holds does.
+        let name = if file.overlaid { "overlay" } else { file.source.name.as_str() };
+        for part in [name, file.source.text.as_str()] {
+            hasher.update((part.len() as u64).to_le_bytes());
+            hasher.update(part.as_bytes());
+        }
+    }
+    hasher.finalize().iter().map(|byte| format!("{byte:02x}")).collect()
+}

@@ -1,0 +1,105 @@
+//! What is known in general: the dictionary, relations, constraints, figures, habitats, and their sources.
+//!
+//! Files are read into nodes, nodes into entries (`read_*`), entries are checked against each other (`check`).
+//! A `Catalog` exists only when all of that succeeded: its formulas cannot fail.
+
+mod basis;
+mod check;
+mod condition;
+mod entry;
+mod files;
+mod read_entries;
+mod read_tables;
+
+use std::collections::{BTreeMap, BTreeSet};
+use std::path::PathBuf;
+
+pub use basis::{Basis, Standing};
+pub use condition::{Clause, Condition, Match};
+pub(crate) use read_entries::correlations as read_correlations;
+
+pub use entry::{
+    Attribute, ByAttribute, Constant, Constraint, Correlation, Default, Entry, Figure, Habitat, Joint, Of,
+    Parameter, Provenance, Quantity, Relation, RelationKind, Side, Words, Work,
+};
+
+use crate::text::Problems;
+
+/// A checked catalogue. Lists of entries are in alphabetical order of id.
+#[derive(Debug)]
+pub struct Catalog {
+    /// The dictionary.
+    pub quantities: BTreeMap<String, Quantity>,
+    /// Words that classify candidates.
+    pub attributes: BTreeMap<String, Attribute>,
+    /// Constants.
+    pub constants: BTreeMap<String, Constant>,
+    /// Works cited.
+    pub works: BTreeMap<String, Work>,
+    /// Relations.
+    pub relations: Vec<Relation>,
+    /// Constraints.
+    pub constraints: Vec<Constraint>,
+    /// Figures.
+    pub figures: Vec<Figure>,
+    /// Habitats.
+    pub habitats: BTreeMap<String, Habitat>,
+    /// SHA-256 of all files, hexadecimal.
+    pub digest: String,
+    /// Names and ids that came from overlays.
+    pub overlaid: BTreeSet<String>,
+}
+
+impl Catalog {
+    /// The catalogue inside the binary with overlays laid over it, in order.
+    ///
+    /// # Errors
+    /// Everything that is wrong with the files.
+    pub fn load(overlays: &[PathBuf]) -> Result<Self, Problems> {
+        let mut problems = Problems::new();
+        let mut all = files::embedded();
+        for folder in overlays {
+            all.extend(files::overlay(folder, &mut problems));
+        }
+        Self::from_files(&all, problems)
+    }
+
+    fn from_files(all: &[files::File], mut problems: Problems) -> Result<Self, Problems> {
+        let tables = read_tables::read(all, &mut problems);
+        let entries = read_entries::read(all, &tables, &mut problems);
+        let digest = files::digest(all);
+        let mut overlaid = tables.overlaid;
+        overlaid.extend(entries.overlaid);
+        let catalog = Self {
+            quantities: tables.quantities,
+            attributes: tables.attributes,
+            constants: tables.constants,
+            works: tables.works,
+            relations: entries.relations.into_values().collect(),
+            constraints: entries.constraints.into_values().collect(),
+            figures: entries.figures.into_values().collect(),
+            habitats: entries.habitats,
+            digest,
+            overlaid,
+        };
+        check::check(&catalog, &mut problems);
+        if problems.is_empty() { Ok(catalog) } else { Err(problems) }
+    }
+
+    /// The words of every attribute.
+    #[must_use]
+    pub fn words(&self) -> Words {
+        self.attributes
+            .iter()
+            .map(|(name, attribute)| (name.clone(), attribute.words.keys().cloned().collect()))
+            .collect()
+    }
+
+    /// Every entry, whatever its class.
+    pub fn entries(&self) -> impl Iterator<Item = &Entry> {
+        let relations = self.relations.iter().map(|relation| &relation.entry);
+        let constraints = self.constraints.iter().map(|constraint| &constraint.entry);
+        let figures = self.figures.iter().map(|figure| &figure.entry);
+        relations.chain(constraints).chain(figures)
+    }
+}

@@ -15,3 +15,4 @@ pub mod text;
 pub mod quantity;
 pub mod formula;
 pub mod catalog;
+pub mod candidate;

@@ -16,3 +16,4 @@ pub mod quantity;
 pub mod formula;
 pub mod catalog;
 pub mod candidate;
+pub mod plan;

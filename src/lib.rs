@@ -17,3 +17,4 @@ pub mod formula;
 pub mod catalog;
 pub mod candidate;
 pub mod plan;
+pub mod run;

@@ -1,0 +1,344 @@
+//! Chooses the numbers that an organism may set, once, for all constraints together.
+//!
+//! What is maximised, in this order: the chance that everything stronger than empirical holds, the chance that everything
+//! holds, the smallest, the next smallest, ... median margin over the constraints that a free number touches, nearness
+//! to the typical values. A number that every constraint pulls the same way goes to that end without a search. The
+//! others are searched on the first draws of the same streams: 17 points per number on its scale, in passes over the
+//! numbers in order of name and over the ends of coupled pairs, until nothing changes.
+
+use std::cmp::Ordering;
+
+use crate::catalog::Basis;
+use crate::math::kernels::{self, Operand};
+use crate::math::quantiles;
+use crate::math::streams::Stream;
+use crate::plan::{Direction, Level, NodeId, Plan, operands};
+use crate::quantity::FreeRange;
+
+use super::case::Case;
+use super::machine::{BLOCK, compute};
+use super::margins::margins;
+
+/// Points tried per number.
+const POINTS: u32 = 17;
+/// Passes over the numbers at most.
+const PASSES: usize = 8;
+/// Margins closer than this (dex) count as equal, so that rounding decides nothing.
+const SAME: f64 = 1e-9;
+
+/// A free number whose typical value would make these constraints stop holding.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Decisive {
+    /// Position among the plan's free numbers.
+    pub free: usize,
+    /// Positions among the plan's constraints.
+    pub constraints: Vec<usize>,
+}
+
+/// Sets the free numbers of a case.
+pub fn choose(plan: &Plan, case: &mut Case, streams: &[Stream]) {
+    let mut searched = Vec::new();
+    for free in 0..plan.free.len() {
+        let pull =
+            plan.constraints.iter().fold(Direction::Still, |pull, planned| pull.and(planned.pulls[free]));
+        let range = case.free[free].range;
+        match pull {
+            Direction::Still => {}
+            Direction::Up => case.free[free].value = range.high,
+            Direction::Down => case.free[free].value = range.low,
+            Direction::Mixed => searched.push(free),
+        }
+    }
+    for id in 0..plan.graph.nodes.len() {
+        case.compute(plan, id);
+    }
+    if !searched.is_empty() {
+        Search::new(plan, case, streams).run(&searched);
+    }
+}
+
+/// The free numbers that decide: each is put at its typical value alone, and the constraints that then no longer hold
+/// in `share` of the draws, but do at the chosen value, are listed.
+#[must_use]
+pub fn decisive(plan: &Plan, case: &Case, streams: &[Stream], share: f64) -> Vec<Decisive> {
+    let moved: Vec<usize> = (0..plan.free.len())
+        .filter(|free| case.free[*free].value != case.free[*free].range.typical)
+        .filter(|free| plan.constraints.iter().any(|planned| planned.pulls[*free] != Direction::Still))
+        .collect();
+    if moved.is_empty() {
+        return Vec::new();
+    }
+    let mut copy = case.clone();
+    let mut search = Search::new(plan, &mut copy, streams);
+    let enough = |bits: &[u64]| ones(bits) as f64 >= share * BLOCK as f64;
+    let before: Vec<bool> = search.holds.iter().map(|bits| enough(bits)).collect();
+    let mut found = Vec::new();
+    for free in moved {
+        let chosen = search.case.free[free].value;
+        search.set(&[(free, search.case.free[free].range.typical)]);
+        let constraints: Vec<usize> =
+            (0..plan.constraints.len()).filter(|at| before[*at] && !enough(&search.holds[*at])).collect();
+        search.set(&[(free, chosen)]);
+        if !constraints.is_empty() {
+            found.push(Decisive { free, constraints });
+        }
+    }
+    found
+}
+
+/// What is maximised.
+#[derive(Clone, Debug)]
+struct Score {
+    strong: u32,
+    all: u32,
+    /// Median margins of the constraints that a free number touches, ascending.
+    medians: Vec<f64>,
+    /// Sum of distances from the typical values, each as a share of its range.
+    distance: f64,
+}
+
+impl Score {
+    fn better(&self, other: &Self) -> bool {
+        let medians = || {
+            self.medians
+                .iter()
+                .zip(&other.medians)
+                .map(|(a, b)| if (a - b).abs() <= SAME { Ordering::Equal } else { a.total_cmp(b) })
+                .find(|ordering| *ordering != Ordering::Equal)
+                .unwrap_or(Ordering::Equal)
+        };
+        let distance = || {
+            if (self.distance - other.distance).abs() <= SAME {
+                Ordering::Equal
+            } else {
+                other.distance.total_cmp(&self.distance)
+            }
+        };
+        self.strong
+            .cmp(&other.strong)
+            .then_with(|| self.all.cmp(&other.all))
+            .then_with(medians)
+            .then_with(distance)
+            == Ordering::Greater
+    }
+}
+
+/// All columns of one block, so that only what depends on a changed number is computed again.
+struct Search<'a> {
+    plan: &'a Plan,
+    case: &'a mut Case,
+    streams: &'a [Stream],
+    columns: Vec<Vec<f64>>,
+    holds: Vec<Vec<u64>>,
+    medians: Vec<f64>,
+    /// Constraints that some free number touches.
+    touched: Vec<usize>,
+    scratch: Vec<f64>,
+    margins: Vec<f64>,
+}
+
+impl<'a> Search<'a> {
+    fn new(plan: &'a Plan, case: &'a mut Case, streams: &'a [Stream]) -> Self {
+        let nodes = plan.graph.nodes.len();
+        let mut needed = vec![false; nodes];
+        for planned in &plan.constraints {
+            needed[planned.available] = true;
+            needed[planned.required] = true;
+        }
+        for id in (0..nodes).rev().filter(|id| plan.graph.nodes[*id].level.is_column()) {
+            if needed[id] {
+                for operand in operands(&plan.graph.nodes[id].op) {
+                    needed[operand] = true;
+                }
+            }
+        }
+        let touched = (0..plan.constraints.len())
+            .filter(|at| plan.constraints[*at].pulls.iter().any(|pull| *pull != Direction::Still))
+            .collect();
+        let mut search = Self {
+            plan,
+            case,
+            streams,
+            columns: vec![Vec::new(); nodes],
+            holds: vec![vec![0; BLOCK / 64]; plan.constraints.len()],
+            medians: vec![f64::NAN; plan.constraints.len()],
+            touched,
+            scratch: vec![0.0; BLOCK],
+            margins: vec![0.0; BLOCK],
+        };
+        for (id, needed) in needed.into_iter().enumerate() {
+            if needed && plan.graph.nodes[id].level.is_column() {
+                search.columns[id] = vec![0.0; BLOCK];
+                search.column(id);
+            }
+        }
+        for at in 0..plan.constraints.len() {
+            search.constraint(at);
+        }
+        search
+    }
+
+    fn operand(&self, id: NodeId) -> Operand<'_> {
+        if self.columns[id].is_empty() {
+            Operand::Scalar(self.case.scalars[id])
+        } else {
+            Operand::Column(&self.columns[id])
+        }
+    }
+
+    fn column(&mut self, id: NodeId) {
+        let mut out = std::mem::take(&mut self.columns[id]);
+        compute(self.plan, self.streams, self.case, id, 0, &mut out, |operand| self.operand(operand));
+        self.columns[id] = out;
+    }
+
+    fn constraint(&mut self, at: usize) {
+        let planned = &self.plan.constraints[at];
+        let (mut scratch, mut out) = (std::mem::take(&mut self.scratch), std::mem::take(&mut self.margins));
+        let mut holds = std::mem::take(&mut self.holds[at]);
+        margins(
+            self.operand(planned.available),
+            self.operand(planned.required),
+            &mut scratch,
+            &mut out,
+            &mut holds,
+        );
+        [self.medians[at]] = quantiles::order_statistics_f64(&mut out, [quantiles::rank_median(BLOCK)]);
+        (self.scratch, self.margins, self.holds[at]) = (scratch, out, holds);
+    }
+
+    /// Gives free numbers new values and computes what depends on them.
+    fn set(&mut self, values: &[(usize, f64)]) {
+        let mut changed = vec![false; self.plan.graph.nodes.len()];
+        for (free, value) in values {
+            self.case.free[*free].value = *value;
+            changed[self.plan.free[*free].node] = true;
+        }
+        for id in 0..changed.len() {
+            let node = &self.plan.graph.nodes[id];
+            changed[id] = changed[id] || operands(&node.op).iter().any(|operand| changed[*operand]);
+            if !changed[id] {
+                continue;
+            }
+            if node.level == Level::Setting {
+                self.case.compute(self.plan, id);
+            } else if !self.columns[id].is_empty() {
+                self.column(id);
+            }
+        }
+        for at in 0..self.plan.constraints.len() {
+            let planned = &self.plan.constraints[at];
+            if changed[planned.available] || changed[planned.required] {
+                self.constraint(at);
+            }
+        }
+    }
+
+    fn score(&self) -> Score {
+        let joint = |strong: bool| {
+            let mut all = vec![u64::MAX; BLOCK / 64];
+            for (planned, bits) in self.plan.constraints.iter().zip(&self.holds) {
+                if !strong || planned.basis < Basis::Empirical {
+                    for (all, bits) in all.iter_mut().zip(bits) {
+                        *all &= bits;
+                    }
+                }
+            }
+            ones(&all)
+        };
+        let mut medians: Vec<f64> = self.touched.iter().map(|at| self.medians[*at]).collect();
+        // Not a number is the worst a margin can be.
+        medians.iter_mut().filter(|median| median.is_nan()).for_each(|median| *median = f64::NEG_INFINITY);
+        medians.sort_by(f64::total_cmp);
+        let distance = self.case.free.iter().map(|free| {
+            let at = |value| position(&free.range, value);
+            (at(free.value) - at(free.range.typical)).abs()
+        });
+        Score { strong: joint(true), all: joint(false), medians, distance: distance.sum() }
+    }
+
+    fn run(&mut self, searched: &[usize]) {
+        let mut best = self.score();
+        for _ in 0..PASSES {
+            let mut changed = false;
+            for free in searched {
+                let range = self.case.free[*free].range;
+                let trials: Vec<Vec<(usize, f64)>> =
+                    (0..POINTS).map(|point| vec![(*free, point_of(&range, point))]).collect();
+                changed |= self.try_all(&trials, &mut best);
+            }
+            for (position, one) in searched.iter().enumerate() {
+                for other in &searched[position + 1..] {
+                    if self.coupled(*one, *other) {
+                        let (a, b) = (self.case.free[*one].range, self.case.free[*other].range);
+                        let ends = [(a.low, b.low), (a.low, b.high), (a.high, b.low), (a.high, b.high)];
+                        let trials: Vec<Vec<(usize, f64)>> =
+                            ends.iter().map(|(a, b)| vec![(*one, *a), (*other, *b)]).collect();
+                        changed |= self.try_all(&trials, &mut best);
+                    }
+                }
+            }
+            if !changed {
+                break;
+            }
+        }
+    }
+
+    /// Tries settings of the same numbers and leaves the best of them, or what stood before.
+    fn try_all(&mut self, trials: &[Vec<(usize, f64)>], best: &mut Score) -> bool {
+        let Some(first) = trials.first() else { return false };
+        let mut keep: Vec<(usize, f64)> =
+            first.iter().map(|(free, _)| (*free, self.case.free[*free].value)).collect();
+        let mut changed = false;
+        for trial in trials {
+            if *trial == keep {
+                continue;
+            }
+            self.set(trial);
+            let score = self.score();
+            if score.better(best) {
+                *best = score;
+                keep.clone_from(trial);
+                changed = true;
+            }
+        }
+        self.set(&keep);
+        changed
+    }
+
+    /// Whether one constraint feels both numbers.
+    fn coupled(&self, one: usize, other: usize) -> bool {
+        self.plan
+            .constraints
+            .iter()
+            .any(|planned| planned.pulls[one] != Direction::Still && planned.pulls[other] != Direction::Still)
+    }
+}
+
+fn ones(bits: &[u64]) -> u32 {
+    bits.iter().map(|word| word.count_ones()).sum()
+}
+
+/// Where a value stands in its range, from 0 to 1 on the range's scale.
+fn position(range: &FreeRange, value: f64) -> f64 {
+    if range.low >= range.high {
+        0.0
+    } else if range.logarithmic {
+        kernels::ln(value / range.low) / kernels::ln(range.high / range.low)
+    } else {
+        (value - range.low) / (range.high - range.low)
+    }
+}
+
+fn point_of(range: &FreeRange, point: u32) -> f64 {
+    let share = f64::from(point) / f64::from(POINTS - 1);
+    if point == 0 {
+        range.low
+    } else if point == POINTS - 1 {
+        range.high
+    } else if range.logarithmic {
+        range.low * kernels::exp(share * kernels::ln(range.high / range.low))
+    } else {
+        range.low + share * (range.high - range.low)
+    }
+}

@@ -18,3 +18,4 @@ pub mod catalog;
 pub mod candidate;
 pub mod plan;
 pub mod run;
+pub mod judge;

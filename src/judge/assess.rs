@@ -1,0 +1,570 @@
+//! Builds the assessment of one candidate from its plan and its draws.
+
+use std::collections::BTreeMap;
+
+use super::assessment::{
+    Assessed, Assessment, Citation, ConstraintResult, DoubtfulGround, Extrapolation, Interval, Origin,
+    OverallResult, ParameterResult, QuantityResult, Role, RunRecord, SpeaksOf, Verdict, Warning, Working,
+};
+use super::verdict::{Entry, TOLERATED_NOT_A_NUMBER, verdict, whole};
+use crate::candidate::Candidate;
+use crate::catalog::{self, Basis, Catalog, Constraint};
+use crate::formula::Formula;
+use crate::math::quantiles;
+use crate::plan::{Outside, Plan, Planned, Producer};
+use crate::quantity::shown::{self, Precision};
+use crate::quantity::written::Value;
+use crate::quantity::{Distribution, Unit};
+use crate::run::{CAP, Case, Decisive, Outcome, Settings, Statistics, chance_error, interval_ranks};
+use crate::text::{Problem, Problems};
+
+/// What was asked for, for the record.
+#[derive(Clone, Debug)]
+pub struct Asked {
+    /// How draws were made.
+    pub settings: Settings,
+    /// Ids of the constraints asked for; empty means all.
+    pub only: Vec<String>,
+}
+
+/// A stated value and what a definition makes of the other statements may differ by this factor without contradiction:
+/// the rounding of what is written.
+const ROUNDING: f64 = 1.01;
+
+/// Stated quantities that contradict each other by more than their uncertainties.
+#[must_use]
+pub fn contradictions(
+    catalog: &Catalog,
+    candidate: &Candidate,
+    plan: &Plan,
+    case: &Case,
+    outcome: &Outcome,
+) -> Problems {
+    let mut problems = Problems::new();
+    for identity in &plan.identities {
+        let Some(reading) = candidate.stated(&identity.quantity) else { continue };
+        let (stated, derived) =
+            (Values::of(identity.stated, case, outcome), Values::of(identity.derived, case, outcome));
+        let draws = outcome.record.draws.min(crate::run::FIRST_ROUND);
+        let mut ratios: Vec<f64> = (0..draws).map(|draw| derived.at(draw) / stated.at(draw)).collect();
+        let ranks = interval_ranks(ratios.len());
+        let found = quantiles::order_statistics_f64(&mut ratios, ranks);
+        if found[2] < 1.0 / ROUNDING || found[0] > ROUNDING || found[1].is_nan() {
+            let relation = &catalog.relations[identity.relation];
+            let unit = &reading.unit;
+            let show = |values: &Values<'_>| {
+                let [low, median, high] = values.quantiles();
+                shown::in_unit(median, Precision::supported_by(median, low, high), unit)
+            };
+            problems.push(
+                Problem::at(
+                    reading.place.clone(),
+                    format!(
+                        "`{}` is stated as {}, but what else is stated makes it {}",
+                        identity.quantity,
+                        show(&stated),
+                        show(&derived)
+                    ),
+                )
+                .expected(format!(
+                    "one of them, or values that agree within their uncertainties (by `{}`: {})",
+                    relation.entry.id,
+                    relation.formula.text()
+                )),
+            );
+        }
+    }
+    problems
+}
+
+/// The values of a node: one for all draws, or one for each of the first draws.
+enum Values<'a> {
+    One(f64),
+    Each(&'a [f64]),
+}
+
+impl<'a> Values<'a> {
+    fn of(node: usize, case: &Case, outcome: &'a Outcome) -> Self {
+        outcome.values(node).map_or(Values::One(case.scalars[node]), Values::Each)
+    }
+
+    fn at(&self, draw: usize) -> f64 {
+        match self {
+            Self::One(value) => *value,
+            Self::Each(values) => values[draw],
+        }
+    }
+
+    fn quantiles(&self) -> [f64; 3] {
+        match self {
+            Self::One(value) => [*value; 3],
+            Self::Each(values) => {
+                let mut copy = values.to_vec();
+                let ranks = interval_ranks(copy.len());
+                quantiles::order_statistics_f64(&mut copy, ranks)
+            }
+        }
+    }
+
+    fn median(&self) -> f64 {
+        self.quantiles()[1]
+    }
+}
+
+/// Builds the assessment.
+#[must_use]
+pub fn assess(
+    catalog: &Catalog,
+    candidate: &Candidate,
+    plan: &Plan,
+    case: &Case,
+    outcome: &Outcome,
+    decisive: &[Decisive],
+    asked: &Asked,
+) -> Assessment {
+    let builder = Builder { catalog, candidate, plan, case, outcome, asked };
+    let (mut constraints, overall) = builder.constraints();
+    constraints.sort_by(|a, b| a.id.cmp(&b.id));
+    let mut quantities = builder.quantities();
+    quantities.sort_by(|a, b| a.name.cmp(&b.name));
+    let citations = builder.citations(&constraints);
+    let warnings = builder.warnings(&constraints, decisive);
+    Assessment {
+        name: candidate.name.clone(),
+        file: candidate.file.clone(),
+        document: candidate.document,
+        attributes: candidate.attributes.clone(),
+        notes: candidate.notes.clone(),
+        habitat: candidate.habitat.clone(),
+        run: RunRecord {
+            seed: asked.settings.seed,
+            draws: outcome.record.draws as u64,
+            settled: outcome.settled,
+            cap: CAP as u64,
+            laws: "preferred".to_owned(),
+            only: asked.only.clone(),
+            overlays: catalog.overlaid.iter().cloned().collect(),
+            pass_at: asked.settings.pass_at,
+            fail_at: asked.settings.fail_at,
+            catalog_digest: catalog.digest.clone(),
+        },
+        overall,
+        constraints,
+        quantities,
+        warnings,
+        citations,
+    }
+}
+
+struct Builder<'a> {
+    catalog: &'a Catalog,
+    candidate: &'a Candidate,
+    plan: &'a Plan,
+    case: &'a Case,
+    outcome: &'a Outcome,
+    asked: &'a Asked,
+}
+
+impl Builder<'_> {
+    fn constraints(&self) -> (Vec<ConstraintResult>, OverallResult) {
+        let (pass_at, fail_at) = (self.asked.settings.pass_at, self.asked.settings.fail_at);
+        let draws = self.outcome.record.draws;
+        let mut results = Vec::new();
+        let mut entries = Vec::new();
+        for (at, planned) in self.plan.constraints.iter().enumerate() {
+            let statistics = &self.outcome.statistics[at];
+            let constraint = &self.catalog.constraints[planned.constraint];
+            let not_a_number = statistics.not_a_number as f64 / draws as f64;
+            let mut result = self.blank(constraint, planned.basis);
+            result.sources = planned.support.sources.iter().cloned().collect();
+            result.doubts = planned
+                .support
+                .doubts
+                .iter()
+                .map(|doubt| DoubtfulGround {
+                    what: doubt.what.clone(),
+                    standing: doubt.standing.to_string(),
+                })
+                .collect();
+            if not_a_number > TOLERATED_NOT_A_NUMBER {
+                result.reason =
+                    Some(format!("the margin is not a number in {:.1} % of draws", 100.0 * not_a_number));
+            } else {
+                result.verdict = verdict(statistics, draws, pass_at, fail_at);
+                result.assessed = Some(self.assessed(planned, statistics, not_a_number));
+                result.speaks_of = self.speaks_of(constraint);
+                result.extrapolated = self.extrapolated(planned, constraint);
+                entries.push(Entry {
+                    at,
+                    id: &constraint.entry.id,
+                    family: &constraint.entry.family,
+                    basis: planned.basis,
+                    verdict: result.verdict,
+                    statistics,
+                });
+            }
+            results.push(result);
+        }
+        for (at, why) in &self.plan.outside {
+            results.push(self.outside(&self.catalog.constraints[*at], why));
+        }
+        let whole = whole(&entries, &self.outcome.record, pass_at, fail_at);
+        let assessed = entries.len();
+        let not_assessed = results.iter().filter(|result| result.verdict == Verdict::NotAssessed).count();
+        let chance = (assessed > 0).then(|| whole.together as f64 / draws as f64);
+        let overall = OverallResult {
+            verdict: whole.verdict,
+            chance,
+            chance_se: chance.map(|_| chance_error(whole.together, draws as u64)),
+            assessed,
+            of: assessed + not_assessed,
+            basis: whole.basis,
+            outside_known_life: whole.outside_known_life,
+            binding: whole.binding.map(|(at, _)| entries[at].id.to_owned()),
+            binding_share: whole.binding.and_then(|(_, share)| share),
+        };
+        (results, overall)
+    }
+
+    fn blank(&self, constraint: &Constraint, basis: Basis) -> ConstraintResult {
+        ConstraintResult {
+            id: constraint.entry.id.clone(),
+            title: constraint.entry.title.clone(),
+            family: constraint.entry.family.clone(),
+            basis,
+            verdict: Verdict::NotAssessed,
+            assessed: None,
+            unit: constraint.unit.clone(),
+            available_says: constraint.available.says.clone(),
+            required_says: constraint.required.says.clone(),
+            available_formula: one_line(constraint.available.formula.text()),
+            required_formula: one_line(constraint.required.formula.text()),
+            parameters: self.parameters(&constraint.entry),
+            meaning: constraint.entry.meaning.clone().unwrap_or_default(),
+            exceptions: constraint.entry.exceptions.clone(),
+            speaks_of: None,
+            extrapolated: Vec::new(),
+            missing: Vec::new(),
+            reason: None,
+            sources: constraint.entry.sources.clone(),
+            doubts: Vec::new(),
+        }
+    }
+
+    fn outside(&self, constraint: &Constraint, why: &Outside) -> ConstraintResult {
+        let mut result = self.blank(constraint, constraint.entry.basis);
+        match why {
+            Outside::Missing(groups) => result.missing.clone_from(groups),
+            Outside::DefaultsAlone => result.reason = Some("rests on defaults alone".to_owned()),
+            Outside::Chemistry(attributes) => {
+                result.verdict = Verdict::NotApplicable;
+                let words: Vec<String> = attributes
+                    .iter()
+                    .filter_map(|name| Some(format!("{name} is {}", self.candidate.attributes.get(name)?)))
+                    .collect();
+                result.reason = Some(words.join(", "));
+            }
+        }
+        result
+    }
+
+    fn values(&self, node: usize) -> Values<'_> {
+        Values::of(node, self.case, self.outcome)
+    }
+
+    fn assessed(&self, planned: &Planned, statistics: &Statistics, not_a_number_share: f64) -> Assessed {
+        let draws = self.outcome.record.draws as u64;
+        Assessed {
+            chance: statistics.holding as f64 / draws as f64,
+            chance_se: chance_error(statistics.holding, draws),
+            available: self.values(planned.available).median(),
+            required: self.values(planned.required).median(),
+            margin: Interval { median: statistics.median, low: statistics.low, high: statistics.high },
+            not_a_number_share,
+        }
+    }
+
+    fn speaks_of(&self, constraint: &Constraint) -> Option<SpeaksOf> {
+        let name = constraint.speaks_of.as_ref()?.of(&self.candidate.attributes).ok()?;
+        let planned = self.plan.quantities.iter().find(|quantity| quantity.name == *name)?;
+        let value = self.values(planned.node).median();
+        Some(SpeaksOf { quantity: name.clone(), value, unit: self.catalog.quantities[name].unit.clone() })
+    }
+
+    fn extrapolated(&self, planned: &Planned, constraint: &Constraint) -> Vec<Extrapolation> {
+        let relations =
+            planned.support.relations.iter().map(|at| self.catalog.relations[*at].entry.id.as_str());
+        let entries: Vec<&str> = relations.chain([constraint.entry.id.as_str()]).collect();
+        let mut found = Vec::new();
+        for check in self.plan.ranges.iter().filter(|check| entries.contains(&check.entry.as_str())) {
+            let distance = |value: f64| {
+                if value < check.range.low {
+                    check.range.low - value
+                } else if value > check.range.high {
+                    value - check.range.high
+                } else {
+                    0.0
+                }
+            };
+            let (mut outside, all): (Vec<f64>, usize) = match self.values(check.node) {
+                Values::One(value) => (vec![distance(value)], 1),
+                Values::Each(values) => (values.iter().map(|value| distance(*value)).collect(), values.len()),
+            };
+            outside.retain(|distance| *distance > 0.0);
+            if !outside.is_empty() {
+                found.push(Extrapolation {
+                    relation: check.entry.clone(),
+                    quantity: check.quantity.clone(),
+                    share: outside.len() as f64 / all as f64,
+                    by: median_of(&mut outside),
+                    unit: self.catalog.quantities[&check.quantity].unit.clone(),
+                });
+            }
+        }
+        found
+    }
+
+    fn quantities(&self) -> Vec<QuantityResult> {
+        let mut results: Vec<QuantityResult> = self
+            .plan
+            .quantities
+            .iter()
+            .map(|planned| self.quantity(&planned.name, planned.node, planned.producer))
+            .collect();
+        // What nothing uses was stated all the same: the report echoes how it was read.
+        for name in &self.plan.unused {
+            if let Some(reading) = self.candidate.given.get(name) {
+                results.push(self.reading(name, reading, Origin::Given));
+            }
+        }
+        for planned in &self.plan.figures {
+            let figure = &self.catalog.figures[planned.figure];
+            let [low, median, high] = self.values(planned.node).quantiles();
+            results.push(QuantityResult {
+                name: figure.entry.id.clone(),
+                about: figure.entry.title.clone(),
+                role: Role::Unknown,
+                origin: Origin::Figure(figure.entry.id.clone()),
+                working: Some(self.working(&figure.entry, &figure.formula)),
+                distribution: String::new(),
+                median,
+                low,
+                high,
+                chosen: None,
+                unit: figure.unit.clone(),
+                remark: None,
+            });
+        }
+        for (name, adopted) in &self.candidate.adopted {
+            results.push(self.reading(name, &adopted.reading, Origin::Adopted));
+        }
+        results
+    }
+
+    fn reading(
+        &self,
+        name: &str,
+        reading: &crate::quantity::written::Reading,
+        origin: Origin,
+    ) -> QuantityResult {
+        let quantity = self.catalog.quantities.get(name);
+        let (role, [low, median, high]) = match &reading.value {
+            Value::Unknown(distribution) => (Role::Unknown, quantiles_of(distribution)),
+            Value::Free(range) => (Role::Free, [range.low, range.typical, range.high]),
+        };
+        QuantityResult {
+            name: name.to_owned(),
+            about: quantity.map(|quantity| quantity.about.clone()).unwrap_or_default(),
+            role,
+            origin,
+            working: None,
+            distribution: described(&reading.value, &reading.unit),
+            median,
+            low,
+            high,
+            chosen: None,
+            unit: reading.unit.clone(),
+            remark: reading.about.clone(),
+        }
+    }
+
+    fn quantity(&self, name: &str, node: usize, producer: Producer) -> QuantityResult {
+        let quantity = &self.catalog.quantities[name];
+        let free = self.plan.free.iter().position(|number| number.name == name);
+        let stated = self.candidate.stated(name);
+        let default = || {
+            let default = quantity.default.as_ref()?;
+            default.value.of(&self.candidate.attributes).ok()
+        };
+        let value = stated.map(|reading| &reading.value).or_else(|| match producer {
+            Producer::Default => default(),
+            _ => None,
+        });
+        let unit = stated.map_or_else(|| quantity.unit.clone(), |reading| reading.unit.clone());
+        let [low, median, high] = match value {
+            Some(Value::Unknown(distribution)) => quantiles_of(distribution),
+            _ => self.values(node).quantiles(),
+        };
+        let (origin, distribution) = match producer {
+            Producer::Given => (Origin::Given, value.map(|value| described(value, &unit))),
+            Producer::Habitat => (Origin::Habitat, value.map(|value| described(value, &unit))),
+            Producer::Default => (Origin::Default, value.map(|value| described(value, &unit))),
+            Producer::Relation(at) => (Origin::Relation(self.catalog.relations[at].entry.id.clone()), None),
+        };
+        let working = match producer {
+            Producer::Relation(at) => {
+                let relation = &self.catalog.relations[at];
+                Some(self.working(&relation.entry, &relation.formula))
+            }
+            _ => None,
+        };
+        QuantityResult {
+            name: name.to_owned(),
+            about: quantity.about.clone(),
+            working,
+            role: if free.is_some() { Role::Free } else { Role::Unknown },
+            origin,
+            distribution: distribution.unwrap_or_default(),
+            median,
+            low,
+            high,
+            chosen: free.map(|at| self.case.free[at].value),
+            unit,
+            remark: stated.and_then(|reading| reading.about.clone()),
+        }
+    }
+
+    fn working(&self, entry: &catalog::Entry, formula: &Formula) -> Working {
+        Working { formula: one_line(formula.text()), parameters: self.parameters(entry) }
+    }
+
+    /// The numbers that an entry alone brings along, adopted ones as adopted.
+    fn parameters(&self, entry: &catalog::Entry) -> Vec<ParameterResult> {
+        entry
+            .parameters
+            .iter()
+            .filter_map(|(name, parameter)| {
+                let adopted = self.candidate.adopted.get(&format!("{}.{name}", entry.id));
+                let (distribution, unit) =
+                    match adopted.map(|adopted| (&adopted.reading.value, &adopted.reading.unit)) {
+                        Some((Value::Unknown(distribution), unit)) => (distribution, unit),
+                        _ => (parameter.value.of(&self.candidate.attributes).ok()?, &parameter.unit),
+                    };
+                let [low, median, high] = quantiles_of(distribution);
+                Some(ParameterResult { name: name.clone(), median, low, high, unit: unit.clone() })
+            })
+            .collect()
+    }
+
+    fn citations(&self, constraints: &[ConstraintResult]) -> BTreeMap<String, Citation> {
+        let keys = constraints.iter().flat_map(|constraint| &constraint.sources);
+        let figures =
+            self.plan.figures.iter().flat_map(|figure| &self.catalog.figures[figure.figure].entry.sources);
+        keys.chain(figures)
+            .filter_map(|key| {
+                let work = self.catalog.works.get(key)?;
+                let year = if work.year.is_empty() { String::new() } else { format!(" ({})", work.year) };
+                let parts = [format!("{}{year}", work.authors), work.title.clone(), work.journal.clone()];
+                let text =
+                    parts.iter().filter(|part| !part.is_empty()).cloned().collect::<Vec<_>>().join(". ");
+                Some((
+                    key.clone(),
+                    Citation { text, doi: work.doi.clone(), standing: work.standing.to_string() },
+                ))
+            })
+            .collect()
+    }
+
+    fn warnings(&self, constraints: &[ConstraintResult], decisive: &[Decisive]) -> Vec<Warning> {
+        let mut warnings: Vec<Warning> = self
+            .candidate
+            .warnings
+            .iter()
+            .map(|(code, message)| Warning { code, message: message.clone() })
+            .collect();
+        let exact = |value: &Value| matches!(value, Value::Unknown(Distribution::Exact(_)));
+        if !self.candidate.given.is_empty()
+            && self.candidate.given.values().all(|reading| exact(&reading.value))
+        {
+            warnings.push(Warning {
+                code: "all-exact",
+                message:
+                    "nothing that the candidate states is uncertain; write a standard uncertainty, as in \
+                          `210 ± 30 nm`, where a number was measured"
+                        .to_owned(),
+            });
+        }
+        for name in &self.plan.unused {
+            warnings.push(Warning {
+                code: "unused-quantity",
+                message: format!("`{name}` is stated, but no limit that applies here uses it"),
+            });
+        }
+        for constraint in constraints {
+            let share = constraint.assessed.as_ref().map_or(0.0, |assessed| assessed.not_a_number_share);
+            if share > 0.0 {
+                warnings.push(Warning {
+                    code: "not-a-number",
+                    message: format!(
+                        "the margin of `{}` is not a number in {:.3} % of draws, which count as not holding",
+                        constraint.id,
+                        100.0 * share
+                    ),
+                });
+            }
+        }
+        if self.outcome.settled == Some(false) {
+            warnings.push(Warning {
+                code: "cap-reached",
+                message: format!("the answers had not settled after {CAP} draws, the largest number made"),
+            });
+        }
+        for choice in decisive {
+            let number = &self.plan.free[choice.free];
+            let setting = &self.case.free[choice.free];
+            let unit =
+                self.candidate.unit(&number.name).unwrap_or(&self.catalog.quantities[&number.name].unit);
+            let show = |value: f64| shown::in_unit(value, Precision::Digits(2), unit);
+            let ids: Vec<String> = choice
+                .constraints
+                .iter()
+                .map(|at| {
+                    let planned = &self.plan.constraints[*at];
+                    format!("`{}`", self.catalog.constraints[planned.constraint].entry.id)
+                })
+                .collect();
+            warnings.push(Warning {
+                code: "decided-by-choice",
+                message: format!(
+                    "{} hold only because `{}` may be {}; at the typical {} they would not",
+                    ids.join(", "),
+                    number.name,
+                    show(setting.value),
+                    show(setting.range.typical)
+                ),
+            });
+        }
+        warnings
+    }
+}
+
+/// A formula may be folded over lines in its file.
+fn one_line(text: &str) -> String {
+    text.split_whitespace().collect::<Vec<_>>().join(" ")
+}
+
+fn median_of(values: &mut [f64]) -> f64 {
+    let rank = quantiles::rank_median(values.len());
+    quantiles::order_statistics_f64(values, [rank])[0]
+}
+
+fn quantiles_of(distribution: &Distribution) -> [f64; 3] {
+    [0.05, 0.5, 0.95].map(|p| distribution.quantile(p))
+}
+
+fn described(value: &Value, unit: &Unit) -> String {
+    match value {
+        Value::Unknown(distribution) => distribution.describe(unit),
+        Value::Free(range) => range.describe(unit),
+    }
+}

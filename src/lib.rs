@@ -19,3 +19,4 @@ pub mod candidate;
 pub mod plan;
 pub mod run;
 pub mod judge;
+pub mod study;

@@ -1,0 +1,114 @@
+//! Drafts a candidate: what the limits of a body plan use, in the order of how many limits each opens.
+
+use std::collections::{BTreeMap, BTreeSet};
+use std::fmt::Write as _;
+
+use crate::catalog::{Catalog, Clause, Condition, Entry, Of};
+use crate::formula::Formula;
+
+/// A commented candidate for a body plan, as YAML that reads back without problems.
+#[must_use]
+pub fn draft(catalog: &Catalog, body_plan: &str) -> String {
+    let opens = opens(catalog, body_plan);
+    let mut text = String::new();
+    // Writing to a string cannot fail.
+    let mut line = |content: &str| {
+        let _ = writeln!(text, "{content}");
+    };
+    line("hypobiont: 1");
+    line("name: unnamed");
+    line("attributes:");
+    line(&format!("  body_plan: {body_plan}"));
+    for (name, limits) in attributes_used(catalog, body_plan) {
+        let attribute = &catalog.attributes[&name];
+        let words: Vec<&str> = attribute.words.keys().map(String::as_str).collect();
+        let default = attribute
+            .default
+            .as_ref()
+            .map_or_else(|| "no default".to_owned(), |word| format!("default {word}"));
+        line(&format!("  # {name}: {}   # {default}; {limits} entries ask for it", words.join(" | ")));
+    }
+    line("# A value is written 210 nm, 210 ± 30 nm, 210 nm ×/÷ 1.5, { min: 150 nm, max: 300 nm },");
+    line("# or { anywhere_in: [150 nm, 300 nm] } where the organism may have any of these.");
+    for (of, section) in [(Of::Organism, "organism"), (Of::Environment, "environment")] {
+        line(&format!("{section}:"));
+        let mut names: Vec<(&String, usize)> = opens
+            .iter()
+            .filter(|(name, _)| catalog.quantities[*name].of == of)
+            .map(|(name, limits)| (name, limits.len()))
+            .collect();
+        names.sort_by(|a, b| b.1.cmp(&a.1).then(a.0.cmp(b.0)));
+        for (name, limits) in names {
+            let quantity = &catalog.quantities[name];
+            let unit = quantity.unit.text();
+            let about = quantity.about.split_whitespace().collect::<Vec<_>>().join(" ");
+            let assumed = if quantity.default.is_some() { "; assumed when not stated" } else { "" };
+            line(&format!("  # {name}: _ {unit}   # {about}; opens {limits} limits{assumed}"));
+        }
+    }
+    text
+}
+
+/// The condition that says only the body plan.
+fn asking(body_plan: &str) -> Condition {
+    Condition {
+        clauses: vec![Clause {
+            attribute: "body_plan".to_owned(),
+            words: vec![body_plan.to_owned()],
+            excluded: false,
+        }],
+    }
+}
+
+/// Quantities that limits of the body plan can use, each with the ids of those limits.
+#[must_use]
+pub fn opens(catalog: &Catalog, body_plan: &str) -> BTreeMap<String, BTreeSet<String>> {
+    let words = catalog.words();
+    let asked = asking(body_plan);
+    let concerns = |entry: &Entry| entry.condition.overlaps(&asked, &words);
+    let mut opens: BTreeMap<String, BTreeSet<String>> = BTreeMap::new();
+    for constraint in catalog.constraints.iter().filter(|constraint| concerns(&constraint.entry)) {
+        let mut waiting = names(catalog, &constraint.available.formula);
+        waiting.extend(names(catalog, &constraint.required.formula));
+        let mut seen = BTreeSet::new();
+        while let Some(name) = waiting.pop() {
+            if !seen.insert(name.clone()) {
+                continue;
+            }
+            for relation in &catalog.relations {
+                let fits = relation.gives == name
+                    && relation.entry.condition.overlaps(&constraint.entry.condition, &words)
+                    && concerns(&relation.entry);
+                if fits {
+                    waiting.extend(names(catalog, &relation.formula));
+                }
+            }
+            opens.entry(name).or_default().insert(constraint.entry.id.clone());
+        }
+    }
+    opens
+}
+
+fn names(catalog: &Catalog, formula: &Formula) -> Vec<String> {
+    formula
+        .names()
+        .iter()
+        .map(|name| name.to_string())
+        .filter(|name| catalog.quantities.contains_key(name))
+        .collect()
+}
+
+/// Attributes that entries of the body plan ask for, the most asked first.
+fn attributes_used(catalog: &Catalog, body_plan: &str) -> Vec<(String, usize)> {
+    let words = catalog.words();
+    let asked = asking(body_plan);
+    let mut counts: BTreeMap<String, usize> = BTreeMap::new();
+    for entry in catalog.entries().filter(|entry| entry.condition.overlaps(&asked, &words)) {
+        for clause in entry.condition.clauses.iter().filter(|clause| clause.attribute != "body_plan") {
+            *counts.entry(clause.attribute.clone()).or_default() += 1;
+        }
+    }
+    let mut counts: Vec<(String, usize)> = counts.into_iter().collect();
+    counts.sort_by(|a, b| b.1.cmp(&a.1).then(a.0.cmp(&b.0)));
+    counts
+}

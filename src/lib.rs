@@ -20,3 +20,4 @@ pub mod plan;
 pub mod run;
 pub mod judge;
 pub mod study;
+pub mod report;

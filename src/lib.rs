@@ -21,3 +21,4 @@ pub mod run;
 pub mod judge;
 pub mod study;
 pub mod report;
+pub mod cli;

@@ -1,3 +1,7 @@
-//! The command line of hypobiont; no command is there yet.
+//! The command line of hypobiont: reads the arguments, runs one command, returns its exit status.
 
-fn main() {}
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    hypobiont::cli::run().into()
+}

@@ -1,1 +1,16 @@
-//! Integration tests: one binary.
+//! Integration tests: one binary. Each file is a subject; `run` starts the program as a user would.
+
+// Helpers may unwrap like the tests that they serve.
+#[cfg(test)]
+mod run;
+#[cfg(test)]
+mod snapshot;
+
+#[cfg(test)]
+mod engine;
+#[cfg(test)]
+mod layering;
+#[cfg(test)]
+mod report;
+#[cfg(test)]
+mod reproducible;

@@ -30,8 +30,8 @@ pub struct Problem {
     pub nearest: Option<String>,
 }
 
-/// All problems of a phase, in the order found. Beyond the first 1,000 they are only counted, so that a hostile file cannot
-/// fill the memory.
+/// All problems of a phase, in the order found. Beyond the first 10,000 they are only counted and reading stops, so that
+/// a hostile file costs neither memory nor time.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub struct Problems {
     list: Vec<Problem>,
@@ -39,7 +39,7 @@ pub struct Problems {
 }
 
 /// How many problems are kept.
-const KEPT: usize = 1_000;
+const KEPT: usize = 10_000;
 
 impl Fault {
     /// A fault at these bytes of a short text.
@@ -135,7 +135,7 @@ pub fn nearest<'a>(name: &str, known: impl IntoIterator<Item = &'a str>) -> Opti
         .into_iter()
         // The distance is at least the difference in length; comparing only what is near in length bounds the cost.
         .filter(|known| known.chars().count().abs_diff(length) <= limit)
-        .map(|known| (strsim::damerau_levenshtein(name, known), known))
+        .map(|known| (strsim::osa_distance(name, known), known))
         .filter(|(distance, _)| *distance <= limit)
         .min()
         .map(|(_, known)| known.to_owned())

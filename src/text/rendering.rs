@@ -56,7 +56,8 @@ impl Problems {
             blocks.push(problem.shown_at(at, width));
         }
         if more > 0 {
-            blocks.push(format!("and {more} more\n"));
+            let stopped = if self.is_full() { "; what follows them was not read" } else { "" };
+            blocks.push(format!("and {more} more{stopped}\n"));
         }
         blocks.join("\n")
     }

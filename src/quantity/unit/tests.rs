@@ -208,7 +208,11 @@ fn unknown_symbols_get_the_nearest_known() {
     refused("mpa", "mpa", "not a unit", "`MPa`");
     refused("kcal/mol", "kcal", "not a unit", "4.184 J");
     refused("furlong", "furlong", "not a unit", "a unit such as");
-    refused("pho\u{ad}tons", "pho", "not a unit", "");
+    refused("pho\u{ad}tons", "\u{ad}", "`<U+00AD>` cannot stand", "not seen");
+    refused("m°C", "m°C", "not a unit", "`mK`");
+    refused("Â°C", "Â°C", "not a unit", "Latin-1");
+    refused("psu", "psu", "not a unit", "`g/kg`");
+    refused("°F", "°F", "not a unit", "`K`");
 }
 
 #[test]
@@ -223,6 +227,11 @@ fn broken_units_are_faults_that_point_at_the_place() {
     refused("m^99999999999999999999", "^99999999999999999999", "no power", "^2");
     refused("W.m", ".", "cannot stand", "`·`");
     refused("10 m", "10", "number `10`", "");
+    refused("J/3600 s", "3", "a number stands", "before the unit");
+    refused("m, s", ",", "cannot stand", "`{ values: [a, b] }`");
+    refused("m [12]", "[", "cannot stand", "`{ value: 210 nm");
+    refused("m ± 3 m", "±", "cannot stand", "one uncertainty");
+    refused("m\u{fffd}", "\u{fffd}", "cannot stand", "lost");
     refused("1 m", "1 ", "a number", "1/s");
     let long = "m".repeat(400);
     refused(&long, &long, "400 bytes", "kJ/mol");
@@ -256,7 +265,7 @@ proptest! {
         if let Ok(read) = Unit::read(&text) {
             prop_assert_eq!(Unit::read(read.text()), Ok(read));
         } else {
-            prop_assert!(["°C", "℃", "ºC", "degC"].iter().any(|celsius| text.contains(celsius)), "{}", text);
+            prop_assert!(["°C", "℃", "ºC", "˚C", "degC"].iter().any(|celsius| text.contains(celsius)), "{}", text);
         }
     }
 

@@ -161,7 +161,12 @@ impl Column<'_> {
         }
         let alone = "a number alone; its unit stands in `unit`";
         let number = number(&mut cursor).map_err(|fault| {
-            let message = format!("`{}` is not a number", shortened(cell, 60));
+            // What speaks of a part of the cell would leave its reader searching.
+            let message = if fault.span == (0..cell.len()) {
+                fault.message
+            } else {
+                format!("`{}` is not a number", shortened(cell, 60))
+            };
             Fault::new(0..cell.len(), message).expected(fault.expected.unwrap_or_else(|| alone.to_owned()))
         })?;
         if !cursor.rest().is_empty() || number.uncertainty.is_some() {

@@ -87,8 +87,8 @@ fn a_free_range_has_a_scale_and_a_typical_value() {
     assert_eq!((stated.logarithmic, stated.typical), (false, 3.4e-8));
     LENGTH.refuses("{ anywhere_in: [6 nm, 20 nm], typical: 34 nm }", "34 nm", "outside the range", "between");
     LENGTH.refuses("{ anywhere_in: [20 nm, 6 nm] }", "[20 nm, 6 nm]", "not below", "lower first");
-    LENGTH.refuses("{ anywhere_in: [20 nm] }", "[20 nm]", "1 ends", "`[6 nm, 20 nm]`");
-    LENGTH.refuses("{ anywhere_in: 20 nm }", "20 nm", "the text", "a list");
+    LENGTH.refuses("{ anywhere_in: [20 nm] }", "[20 nm]", "two ends", "`[6 nm, 20 nm]`");
+    LENGTH.refuses("{ anywhere_in: 20 nm }", "20 nm", "the text", "`[6 nm, 20 nm]`");
     LENGTH.refuses("{ anywhere_in: [0 nm, 20 nm], scale: log }", "0 nm", "above zero", "`scale: linear`");
     LENGTH.refuses("{ anywhere_in: [-1 nm, 20 nm] }", "-1 nm", "cannot be", "from 0 nm");
     LENGTH.refuses("{ anywhere_in: [6 nm, 20 nm], typcal: 7 nm }", "typcal", "not known", "typical");
@@ -96,7 +96,7 @@ fn a_free_range_has_a_scale_and_a_typical_value() {
         "{ anywhere_in: [1, 2] }",
         "[1, 2]",
         "not for the organism to choose",
-        "`{ min: ..., max: ... }`",
+        "`{ min: 1, max: 2 }`",
     );
 }
 
@@ -143,13 +143,18 @@ fn wrong_maps_are_refused_at_the_key_or_value() {
     LENGTH.refuses("{ median: 210 nm, factor: 1 }", "1", "not above 1", "`1.5`");
     LENGTH.refuses("{ median: 210 nm, factor: 2 nm }", "2 nm", "a length", "a pure number");
     LENGTH.refuses("{ median: 0 nm, factor: 2 }", "0 nm", "above zero", "");
-    LENGTH.refuses("{ min: 240 nm, max: 180 nm }", "180 nm", "not above `min`", "lower end first");
-    LENGTH.refuses("{ min: 180 nm, max: 180 nm }", "180 nm", "not above `min`", "lower end first");
+    LENGTH.refuses("{ min: 240 nm, max: 180 nm }", "180 nm", "not above `min`", "the lower end as the first");
+    LENGTH.refuses("{ min: 180 nm, max: 180 nm }", "180 nm", "not above `min`", "the lower end as the first");
     LENGTH.refuses("{ min: 0 nm, max: 180 nm, scale: log }", "0 nm", "logarithm", "above zero");
     LENGTH.refuses("{ min: 1 nm, max: 180 nm, scale: lg }", "lg", "not known as a scale", "log");
-    LENGTH.refuses("{ min: -1 nm, max: 180 nm }", "-1 nm", "cannot be -1 nm", "from 0 nm");
+    LENGTH.refuses("{ min: -1 nm, max: 180 nm }", "-1 nm", "cannot be `-1 nm`", "from 0 nm");
     LENGTH.refuses("{ min: 1 nm, max: 2 nm, mode: 3 nm }", "3 nm", "outside min and max", "between");
-    LENGTH.refuses("{ values: [1 nm, 2 nm], weights: [1] }", "[1]", "1 weights for 2 values", "one weight");
+    LENGTH.refuses(
+        "{ values: [1 nm, 2 nm], weights: [1] }",
+        "[1]",
+        "`weights` and `values` differ in length: 1 and 2",
+        "one weight",
+    );
     LENGTH.refuses("{ values: [1 nm, 2 nm], weights: [1, -1] }", "-1", "negative", "zero or more");
     LENGTH.refuses("{ values: [1 nm, 2 nm], weights: [0, 0] }", "[0, 0]", "add up", "[1, 2, 1]");
     LENGTH.refuses("{ values: [1 nm, -2 nm] }", "-2 nm", "cannot be", "from 0 nm");
@@ -203,20 +208,18 @@ fn a_sample_is_read_from_its_column() {
     assert_eq!(read, expected);
     assert_eq!(case.reading("{ sample: sizes.csv, column: width, unit: nm }").unit.text(), "nm");
     case.refuses("{ sample: sizes.csv, column: widht, unit: nm }", "widht", "no column", "width");
-    case.refuses("{ sample: size.csv, column: width, unit: nm }", "size.csv", "cannot be read", "sizes.csv");
-    case.refuses("{ sample: ., column: width, unit: nm }", ".", "not a file", "regular file");
+    case.refuses("{ sample: size.csv, column: width, unit: nm }", "size.csv", "does not exist", "sizes.csv");
+    case.refuses("{ sample: ., column: width, unit: nm }", ".", "a folder", "a file");
     case.refuses(
         "{ sample: /etc/hostname, column: a, unit: nm }",
         "/etc/hostname",
         "candidate's folder",
         "sizes.csv",
     );
-    case.refuses(
-        "{ sample: sizes.csv, column: name, unit: nm }",
-        "sizes.csv",
-        "line 2 of `sizes.csv`: `a`",
-        "210",
-    );
+    // Every row that is wrong is named.
+    let (_, problems, _) = case.try_read("diameter: { sample: sizes.csv, column: name, unit: nm }\n");
+    let lines: Vec<_> = problems.iter().map(|problem| &problem.message[..6]).collect();
+    assert_eq!(lines, ["line 2", "line 3", "line 4"]);
     case.refuses(
         "{ sample: sizes.csv, column: width, unit: s }",
         "s",
@@ -253,17 +256,17 @@ fn a_sample_that_is_no_clean_column_is_refused_with_its_line() {
     );
     let case = Case { folder: Some(&folder.0), ..LENGTH };
     for (file, says) in [
-        ("empty.csv", "no column"),
+        ("empty.csv", "`empty.csv` is empty"),
         ("header.csv", "no rows"),
-        ("text.csv", "line 3 of `text.csv`: `n` stands"),
+        ("text.csv", "line 3 of `text.csv`: `n/a` is not a number"),
         ("gap.csv", "line 3 of `gap.csv`: `width` is empty"),
-        ("ragged.csv", "not a table"),
+        ("ragged.csv", "line 3 of `ragged.csv` has 1 cells, the first line 2"),
         ("unit.csv", "line 2 of `unit.csv`: `180 nm` is not a number"),
         ("comma.csv", "decimal comma"),
-        ("negative.csv", "line 3 of `negative.csv`: `diameter` cannot be -3 nm"),
+        ("negative.csv", "line 3 of `negative.csv`: `diameter` cannot be `-3 nm`"),
         ("twice.csv", "more than one column"),
         ("huge.csv", "line 2 of `huge.csv`: `1e400` is larger"),
-        ("binary.csv", "not a text in UTF-8"),
+        ("binary.csv", "not UTF-8: byte 7, in line 2"),
     ] {
         let (reading, problems, _) =
             case.try_read(&format!("diameter: {{ sample: {file}, column: width, unit: nm }}\n"));

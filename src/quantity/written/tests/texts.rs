@@ -146,7 +146,7 @@ fn an_uncertainty_that_can_be_meant_in_two_ways_is_refused_repaired() {
     LENGTH.refuses("210 ×/÷ 1.5 nm", "nm", "pure number", "`210 nm ×/÷ 1.5`");
     LENGTH.refuses("210 nm ×/÷ 50 %", "%", "pure number", "`210 nm ×/÷ 50`");
     LENGTH.refuses("210(30) ± 5 nm", "210(30)", "another one", "one of the two");
-    LENGTH.refuses("1.2(0.3) nm", "(0.3", "point", "`1.2 ± 0.3`");
+    LENGTH.refuses("1.2(0.3) nm", "(0.3)", "point", "`1.2 ± 0.3 nm`");
     LENGTH.refuses("210 (30) nm", "(30)", "apart", "`210(30) nm`");
     LENGTH.refuses("(210 nm ± 30 nm)", "nm ", "only a number", "`(210 ± 30) nm`");
     LENGTH.refuses("(210 ± 30 nm", "n", "only `)`", "`(210 ± 30) nm`");
@@ -194,6 +194,17 @@ fn limits_ranges_and_rough_numbers_are_refused_with_the_way_to_write_them() {
     LENGTH.refuses("180-240 nm", "180-240 nm", "range", "`{ min: 180 nm, max: 240 nm }`");
     LENGTH.refuses("180 nm - 240 nm", "180 nm - 240 nm", "range", "`{ min: 180 nm, max: 240 nm }`");
     LENGTH.refuses("180 to 240 nm", "180 to 240 nm", "range", "`{ min: 180 nm, max: 240 nm }`");
+    LENGTH.refuses("180—240 nm", "180—240 nm", "range", "`{ min: 180 nm, max: 240 nm }`");
+    LENGTH.refuses("1/3 µm", "1/3", "a fraction", "`0.333333 µm`");
+    LENGTH.refuses(
+        "210 +30/-20 nm",
+        "+30/-20 nm",
+        "two different sides",
+        "`{ min: 190 nm, mode: 210 nm, max: 240 nm }`",
+    );
+    LENGTH.refuses("210 +30 −20 nm", "+30 −20 nm", "two different sides", "low: 190 nm, high: 240 nm");
+    LENGTH.refuses("2.1 × 10-7 m", "× 10-7", "product", "`×10^-7`");
+    LENGTH.refuses("0·21 µm", "·21", "product", "`0.21`");
     LENGTH.refuses("180..240 nm", "180..240 nm", "range", "`{ min: 180 nm, max: 240 nm }`");
     NUMBER.refuses("17 aa s-1", "s-1", "sign of a power", "`s^-1`");
 }
@@ -202,8 +213,8 @@ fn limits_ranges_and_rough_numbers_are_refused_with_the_way_to_write_them() {
 fn what_is_no_number_is_refused_at_its_place() {
     LENGTH.refuses("nan", "nan", "not a number", "`210`");
     LENGTH.refuses(".nan", ".nan", "not a number", "`210`");
-    LENGTH.refuses("-.inf", "-.inf", "infinity", "`210`");
-    LENGTH.refuses("∞ nm", "∞", "infinity", "`210`");
+    LENGTH.refuses("-.inf", "-.inf", "not a finite number", "`210`");
+    LENGTH.refuses("∞ nm", "∞", "not a finite number", "`210`");
     LENGTH.refuses("unknown", "unknown", "where a number was expected", "`210`");
     LENGTH.refuses("± 30 nm", "±", "where a number was expected", "`210`");
     LENGTH.refuses("5. nm", ".", "cannot stand", "");
@@ -212,9 +223,12 @@ fn what_is_no_number_is_refused_at_its_place() {
     LENGTH.refuses("1e400 nm", "1e400", "larger than a number", "");
     LENGTH.refuses("1e-400 nm", "1e-400", "vanish", "");
     LENGTH.refuses("1e-999999999999999999999 nm", "1e-999999999999999999999", "vanish", "");
+    LENGTH.refuses("“210 nm”", "“", "typographic quote", "straight quotes");
+    LENGTH.refuses("210 psu", "psu", "not a unit", "`g/kg`");
+    LENGTH.refuses("210 kgg", "kgg", "not a unit", "a length such as `1 nm`");
     LENGTH.refuses("1e-305 nm", "1e-305", "`1e-305 nm` is so small", "");
     LENGTH.refuses("1e308 Gm", "1e308", "`1e308 Gm` is larger", "");
-    LENGTH.refuses("210 furlong", "furlong", "not a unit", "a unit such as");
+    LENGTH.refuses("210 furlong", "furlong", "not a unit", "a length such as `1 nm`");
     LENGTH.refuses("210 nm (TEM, plate 3)", "(TEM, plate 3)", "remark", "about: \"TEM, plate 3\" }`");
     LENGTH.refuses("210 nm ± 30 mn", "mn", "not a unit", "");
     let long = format!("{} nm", "1".repeat(400));
@@ -237,9 +251,9 @@ fn the_dimension_is_the_one_that_is_wanted() {
 
 #[test]
 fn values_outside_the_bounds_are_refused() {
-    LENGTH.refuses("-5 nm", "-5 nm", "cannot be -5 nm", "from 0 nm to 1000000000 nm");
-    LENGTH.refuses("2 m", "2 m", "cannot be 2000000000 nm", "from 0 nm");
-    TEMPERATURE.refuses("-300 °C", "-300 °C", "cannot be -300 °C", "at least -273.15 °C");
+    LENGTH.refuses("-5 nm", "-5 nm", "cannot be `-5 nm`", "from 0 nm to 1 m");
+    LENGTH.refuses("2 m", "2 m", "cannot be `2 m`", "from 0 nm");
+    TEMPERATURE.refuses("-300 °C", "-300 °C", "cannot be `-300 °C`", "at least −273.15 °C");
     LENGTH.refuses("-10 ± 5 nm", "-10 ± 5 nm", "98 % of this distribution", "from 0 nm");
     LENGTH.refuses("1e-200 m ×/÷ 1e20", "1e-200 m ×/÷ 1e20", "beyond what numbers can hold", "narrower");
 }

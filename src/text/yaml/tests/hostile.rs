@@ -45,6 +45,30 @@ s.yaml:2:66  lists and maps stand more than 64 deep within each other
     );
 }
 
+#[test]
+fn a_document_of_too_many_nodes_is_refused_wherever_they_stand() {
+    let most = "the document holds more than 100000 keys and values";
+    // The list and its elements.
+    let list = |elements: usize| "- 1\n".repeat(elements);
+    assert!(read(&list(99_999)).1.is_empty());
+    assert_eq!(read(&format!("{}---\n{}", list(99_999), list(99_999))).0.len(), 2);
+    for text in [
+        list(100_000),
+        format!("[{}", "1, ".repeat(200_000)),
+        format!("- ? - [{}", "1, ".repeat(500_000)),
+        format!("!t &a {{{}", "a: b, ".repeat(300_000)),
+        format!("*a [{}", "[], ".repeat(500_000)),
+        format!("[{}", "[".repeat(500_000)),
+        format!("\"x\": {{{}", "a, ".repeat(500_000)),
+    ] {
+        let (found, problems) = read(&text);
+        let messages: Vec<_> = problems.iter().map(|problem| problem.message.as_str()).collect();
+        assert!(found.is_empty() && messages.ends_with(&[most]), "{}: {messages:?}", &text[..9]);
+    }
+    // Signs of YAML in a text of many lines are no nodes.
+    assert!(read(&format!("a: |\n{}", "  b, [c], {d: e} 'f' \"g\"\n".repeat(50_000))).1.is_empty());
+}
+
 /// How long reading takes; the limits are generous, for machines that are busy.
 fn time(text: &str) -> Duration {
     let source = Source::new("s.yaml", text);

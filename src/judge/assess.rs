@@ -1,6 +1,6 @@
 //! Builds the assessment of one candidate from its plan and its draws.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 use super::assessment::{
     Assessed, Assessment, Citation, ConstraintResult, DoubtfulGround, Extrapolation, Interval, Origin,
@@ -107,7 +107,7 @@ pub fn assess(
         name: candidate.name.clone(),
         file: candidate.file.clone(),
         document: candidate.document,
-        attributes: candidate.attributes.clone(),
+        attributes: builder.attributes(),
         notes: candidate.notes.clone(),
         habitat: candidate.habitat.clone(),
         run: RunRecord {
@@ -140,6 +140,23 @@ struct Builder<'a> {
 }
 
 impl Builder<'_> {
+    /// The attributes that the candidate states, and those by whose defaults the limits listed here were chosen.
+    fn attributes(&self) -> BTreeMap<String, String> {
+        let planned = self.plan.constraints.iter().map(|planned| planned.constraint);
+        let outside = self.plan.outside.iter().map(|(at, _)| *at);
+        let constraints = planned.chain(outside).map(|at| &self.catalog.constraints[at].entry);
+        let relations = self.plan.constraints.iter().flat_map(|planned| &planned.support.relations);
+        let relations = relations.map(|at| &self.catalog.relations[*at].entry);
+        let asked: BTreeSet<&str> = constraints
+            .chain(relations)
+            .flat_map(|entry| entry.condition.clauses.iter().map(|clause| clause.attribute.as_str()))
+            .collect();
+        let told =
+            |name: &String| asked.contains(name.as_str()) || self.candidate.stated_attributes.contains(name);
+        let attributes = self.candidate.attributes.iter().filter(|(name, _)| told(name));
+        attributes.map(|(name, word)| (name.clone(), word.clone())).collect()
+    }
+
     fn constraints(&self) -> (Vec<ConstraintResult>, OverallResult) {
         let (pass_at, fail_at) = (self.asked.settings.pass_at, self.asked.settings.fail_at);
         let draws = self.outcome.record.draws;
@@ -508,11 +525,13 @@ impl Builder<'_> {
             warnings.push(Warning {
                 code: "decided-by-choice",
                 message: format!(
-                    "{} hold only because `{}` may be {}; at the typical {} they would not",
+                    "{} {} only because `{}` may be {}; at the typical {} {} would not",
                     ids.join(", "),
+                    if ids.len() == 1 { "holds" } else { "hold" },
                     number.name,
                     show(setting.value),
-                    show(setting.range.typical)
+                    show(setting.range.typical),
+                    if ids.len() == 1 { "it" } else { "they" },
                 ),
             });
         }

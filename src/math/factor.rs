@@ -19,7 +19,7 @@ pub fn cholesky(n: usize, coefficient: impl Fn(usize, usize) -> f64) -> Option<V
         }
         let rest = 1.0 - row[..i].iter().map(|part| part * part).sum::<f64>();
         // Also refuses what is not a number.
-        if !(rest > 0.0) {
+        if rest.is_nan() || rest <= 0.0 {
             return None;
         }
         row[i] = rest.sqrt();

@@ -73,6 +73,16 @@ impl Reader<'_> {
         fields.finish(self.problems);
 
         let attributes = attributes_node.map(|node| self.attributes(node)).unwrap_or_default();
+        let stated_attributes = match attributes_node.map(|node| &node.kind) {
+            Some(Kind::Map(entries)) => entries
+                .iter()
+                .filter_map(|(key, _)| match &key.kind {
+                    Kind::Scalar(scalar) => Some(scalar.text.clone()),
+                    _ => None,
+                })
+                .collect(),
+            _ => BTreeSet::new(),
+        };
         let mut warnings = Vec::new();
         let mut given = BTreeMap::new();
         if let Some(node) = organism {
@@ -98,6 +108,7 @@ impl Reader<'_> {
             file: String::new(),
             document: 1,
             attributes,
+            stated_attributes,
             given,
             habitat,
             from_habitat,
@@ -303,6 +314,9 @@ impl Reader<'_> {
                 let message = match given.get(name).map(|reading| &reading.value) {
                     None => format!("`{name}` is correlated but not stated by this candidate"),
                     Some(Value::Free(_)) => format!("`{name}` is free and cannot be correlated"),
+                    Some(Value::Unknown(distribution)) if distribution.file().is_some() => {
+                        format!("`{name}` comes from a file, whose rows say how its columns go together")
+                    }
                     Some(Value::Unknown(Distribution::Exact(_))) => {
                         format!("`{name}` is exact and cannot be correlated")
                     }

@@ -13,6 +13,8 @@ mod engine;
 #[cfg(test)]
 mod layering;
 #[cfg(test)]
+mod readme;
+#[cfg(test)]
 mod report;
 #[cfg(test)]
 mod reproducible;

@@ -73,6 +73,16 @@ impl Reader<'_> {
         fields.finish(self.problems);
 
         let attributes = attributes_node.map(|node| self.attributes(node)).unwrap_or_default();
+        let stated_attributes = match attributes_node.map(|node| &node.kind) {
+            Some(Kind::Map(entries)) => entries
+                .iter()
+                .filter_map(|(key, _)| match &key.kind {
+                    Kind::Scalar(scalar) => Some(scalar.text.clone()),
+                    _ => None,
+                })
+                .collect(),
+            _ => BTreeSet::new(),
+        };
         let mut warnings = Vec::new();
         let mut given = BTreeMap::new();
         if let Some(node) = organism {
@@ -98,6 +108,7 @@ impl Reader<'_> {
             file: String::new(),
             document: 1,
             attributes,
+            stated_attributes,
             given,
             habitat,
             from_habitat,

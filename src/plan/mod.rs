@@ -265,11 +265,13 @@ impl Plan {
         Ok(plan)
     }
 
-    /// Nodes whose values are kept: sides of constraints, quantities, figures, statements held against each other.
+    /// Nodes whose values are kept: sides of constraints, quantities that relations give, figures, what is held against
+    /// a range or another statement. Of stated numbers and defaults the distribution itself is known.
     #[must_use]
     pub fn outputs(&self) -> BTreeSet<NodeId> {
         let sides = self.constraints.iter().flat_map(|planned| [planned.available, planned.required]);
-        let quantities = self.quantities.iter().map(|quantity| quantity.node);
+        let given = |quantity: &&PlannedQuantity| matches!(quantity.producer, Producer::Relation(_));
+        let quantities = self.quantities.iter().filter(given).map(|quantity| quantity.node);
         let figures = self.figures.iter().map(|figure| figure.node);
         let ranges = self.ranges.iter().map(|range| range.node);
         let identities = self.identities.iter().flat_map(|identity| [identity.stated, identity.derived]);

@@ -127,8 +127,9 @@ fn the_power_that_e_coli_respires_lets_it_grow_at_0_87_per_hour() {
     // Free-living is the stricter reading: no building blocks from the medium.
     for lifestyle in ["free-living", "cultured"] {
         let attributes = format!("form: rod, lifestyle: {lifestyle}, metabolism: respiring");
-        let organism =
-            format!("{COLI}, growth_rate: 0.87 1/h, power_supply: 1.3 pW, dry_mass: 0.30 pg, vacuole_fraction: 0");
+        let organism = format!(
+            "{COLI}, growth_rate: 0.87 1/h, power_supply: 1.3 pW, dry_mass: 0.30 pg, vacuole_fraction: 0"
+        );
         let found = screen(&cell(&attributes, &organism, "temperature: 37 °C"));
         assert_eq!(verdict(&found, "power-budget"), "pass", "{lifestyle}");
         assert_eq!(overall(&found), "pass", "{lifestyle}: {}", found["overall"]);
@@ -165,7 +166,9 @@ fn a_ribosome_that_copies_itself_takes_3_7_to_6_minutes_at_37_degrees() {
         let organism = format!("{COLI}, doubling_time: 20 min{rate}");
         median(&screen(&cell(CULTURED_ROD, &organism, "temperature: 37 °C")), "ribosome-copying-limit")
     };
-    for (rate, minutes) in [("", 3.746), (", elongation_rate: 17 aa/s", 5.069), (", elongation_rate: 15 aa/s", 5.745)] {
+    for (rate, minutes) in
+        [("", 3.746), (", elongation_rate: 17 aa/s", 5.069), (", elongation_rate: 15 aa/s", 5.745)]
+    {
         let found = figure(rate);
         assert!((3.7..=6.0).contains(&found), "{rate}: {found}");
         assert!((found - minutes).abs() < 0.005, "{rate}: {found}, expected {minutes}");
@@ -184,7 +187,6 @@ fn a_pass_that_only_a_vacuole_allows_says_so() {
         message.contains("power-budget") && message.contains("vacuole_fraction")
     });
     assert!(said, "{}", found["warnings"]);
-    let solid =
-        screen(&cell(attributes, &format!("{organism}, vacuole_fraction: 0"), "temperature: 37 °C"));
+    let solid = screen(&cell(attributes, &format!("{organism}, vacuole_fraction: 0"), "temperature: 37 °C"));
     assert_eq!(verdict(&solid, "power-budget"), "marginal");
 }

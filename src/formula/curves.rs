@@ -118,7 +118,11 @@ impl fmt::Display for CurveFault {
                 )
             }
             Self::NotPositive { position } => {
-                write!(f, "point {} of the curve is zero or negative on a logarithmic or reciprocal axis", position + 1)
+                write!(
+                    f,
+                    "point {} of the curve is zero or negative on a logarithmic or reciprocal axis",
+                    position + 1
+                )
             }
             Self::TooSteep { position } => {
                 write!(f, "the slope of the curve before point {} is not a finite number", position + 1)

@@ -17,7 +17,9 @@ fn wanting(assessment: &Value) -> String {
     let list = assessment["constraints"].as_array().unwrap();
     let wanting = list.iter().filter(|c| c["verdict"] == "fail" || c["verdict"] == "marginal");
     wanting
-        .map(|c| format!("{} {} {:.3}", c["id"].as_str().unwrap(), c["verdict"].as_str().unwrap(), c["chance"]))
+        .map(|c| {
+            format!("{} {} {:.3}", c["id"].as_str().unwrap(), c["verdict"].as_str().unwrap(), c["chance"])
+        })
         .collect::<Vec<_>>()
         .join(", ")
 }
@@ -53,7 +55,9 @@ fn span(row: &BTreeMap<String, String>, least: &str, most: &str, unit: &str) -> 
     let value = |key: &str| row.get(key).filter(|text| !text.is_empty()).map(String::as_str);
     let number = |text: &str| text.parse::<f64>().unwrap();
     match (value(least), value(most)) {
-        (Some(a), Some(b)) if number(a) < number(b) => Some(format!("{{ min: {a} {unit}, max: {b} {unit} }}")),
+        (Some(a), Some(b)) if number(a) < number(b) => {
+            Some(format!("{{ min: {a} {unit}, max: {b} {unit} }}"))
+        }
         (Some(a), _) | (None, Some(a)) => Some(format!("{a} {unit}")),
         (None, None) => None,
     }
@@ -63,10 +67,9 @@ fn span(row: &BTreeMap<String, String>, least: &str, most: &str, unit: &str) -> 
 fn candidate(row: &BTreeMap<String, String>) -> Option<String> {
     let value = |key: &str| row.get(key).filter(|text| !text.is_empty());
     let (mut form, mut organism, mut environment) = ("", Vec::new(), String::new());
-    if let (Some(width), Some(length)) = (
-        span(row, "width_min_um", "width_max_um", "µm"),
-        span(row, "length_min_um", "length_max_um", "µm"),
-    ) {
+    if let (Some(width), Some(length)) =
+        (span(row, "width_min_um", "width_max_um", "µm"), span(row, "length_min_um", "length_max_um", "µm"))
+    {
         form = ", form: rod";
         organism.extend([format!("width: {width}"), format!("length: {length}")]);
     }

@@ -36,7 +36,11 @@ fn beyond_the_record_of_heat_is_outside_known_life_and_beyond_chemistry_fails() 
     // Takai et al. 2008, PNAS 105:10949: growth at 122 °C. Bains et al. 2015, Life 5:1054: metabolism ends at 150 to 180 °C.
     let at = |celsius: &str| {
         let organism = "diameter: 1 ± 0.1 µm";
-        screen(&cell("form: sphere, metabolism: lithotrophic", organism, &format!("temperature: {celsius} °C")))
+        screen(&cell(
+            "form: sphere, metabolism: lithotrophic",
+            organism,
+            &format!("temperature: {celsius} °C"),
+        ))
     };
     let known = at("122");
     assert_eq!(overall(&known), "pass");
@@ -125,7 +129,11 @@ fn one_number_behind_two_limits_moves_both() {
         .json();
     let moved = |id: &str| margin(&before, id) - margin(&after, id);
     // The share of the genome is the genome alone; among all contents it is some share.
-    assert!((moved("genome-packing") - std::f64::consts::LOG10_2).abs() < 1e-3, "{}", moved("genome-packing"));
+    assert!(
+        (moved("genome-packing") - std::f64::consts::LOG10_2).abs() < 1e-3,
+        "{}",
+        moved("genome-packing")
+    );
     assert!((0.01..0.3).contains(&moved("contents-fit")), "{}", moved("contents-fit"));
 }
 
@@ -159,7 +167,8 @@ fn numbers_from_memory_fail_no_candidate_alone() {
     assert_eq!(overall(&found), "marginal");
     assert_eq!(found["overall"]["outside_known_life"], true);
     // The same for packing between what cells are known to hold and what capsids do.
-    let packed = screen(&cell("form: sphere", "diameter: 600 ± 5 nm, vacuole_fraction: 0, genome_length: 36 Mbp", ""));
+    let packed =
+        screen(&cell("form: sphere", "diameter: 600 ± 5 nm, vacuole_fraction: 0, genome_length: 36 Mbp", ""));
     assert_eq!(verdict(&packed, "genome-packing"), "fail");
     assert_eq!(overall(&packed), "marginal");
     assert!(chance(&packed, "contents-fit") > 0.05);

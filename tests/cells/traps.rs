@@ -172,4 +172,11 @@ fn numbers_from_memory_fail_no_candidate_alone() {
     assert_eq!(verdict(&packed, "genome-packing"), "fail");
     assert_eq!(overall(&packed), "marginal");
     assert!(chance(&packed, "contents-fit") > 0.05);
+    // And the report names the number.
+    let screen = Run::new("screen c.yaml").file(
+        "c.yaml",
+        cell("form: sphere", "diameter: 600 ± 5 nm, vacuole_fraction: 0, genome_length: 36 Mbp", ""),
+    );
+    let told = screen.output().stdout;
+    assert!(told.contains("from memory: `genome_share_limit`"), "{told}");
 }

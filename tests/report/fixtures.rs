@@ -2,8 +2,9 @@
 
 use hypobiont::judge::Assessment;
 use hypobiont::judge::assessment::{
-    Assessed, Basis, Citation, ConstraintResult, Extrapolation, Interval, Marginal, Origin, Overall,
-    OverallResult, ParameterResult, QuantityResult, Role, RunRecord, SpeaksOf, Verdict, Warning, Working,
+    Assessed, Basis, Citation, ConstraintResult, DoubtfulGround, Extrapolation, Interval, Marginal, Origin,
+    Overall, OverallResult, ParameterResult, QuantityResult, Role, RunRecord, SpeaksOf, Verdict, Warning,
+    Working,
 };
 use hypobiont::quantity::Unit;
 
@@ -466,6 +467,7 @@ pub(crate) fn hostile() -> Assessment {
         }
         result.exceptions.iter_mut().chain(&mut result.reason).for_each(evil);
         result.sources.push(HOSTILE.into());
+        result.doubts.push(DoubtfulGround { what: HOSTILE.into(), standing: "from-memory".into() });
         result.missing.iter_mut().flatten().for_each(evil);
         result.parameters.iter_mut().for_each(|one| evil(&mut one.name));
         result.extrapolated.iter_mut().for_each(|one| evil(&mut one.relation));

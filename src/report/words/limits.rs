@@ -78,13 +78,28 @@ fn extrapolation(beyond: &Extrapolation) -> String {
     )
 }
 
-/// The sources behind a result that are disputed or cited from memory.
+/// The numbers behind a result that are disputed or from memory; where none is named, the sources that are.
 fn standings(a: &Assessment, result: &ConstraintResult) -> Vec<String> {
-    let cited = result.sources.iter().filter_map(|key| a.citations.get(key));
-    cited
-        .filter(|citation| matches!(citation.standing.as_str(), "disputed" | "from-memory"))
-        .map(|citation| format!("{}: {}", spoken(&citation.standing), citation.text))
-        .collect()
+    let mut out = Vec::new();
+    for standing in ["disputed", "from-memory"] {
+        let doubted: Vec<String> = result
+            .doubts
+            .iter()
+            .filter(|doubt| doubt.standing == standing)
+            .map(|doubt| format!("`{}`", doubt.what))
+            .collect();
+        if doubted.is_empty() {
+            let cited = result.sources.iter().filter_map(|key| a.citations.get(key));
+            out.extend(
+                cited
+                    .filter(|citation| citation.standing == standing)
+                    .map(|citation| format!("{}: {}", spoken(standing), citation.text)),
+            );
+        } else {
+            out.push(format!("{}: {}", spoken(standing), doubted.join(", ")));
+        }
+    }
+    out
 }
 
 /// Short marks for the same, for lists of titles: `beyond its range, from memory`.
@@ -100,6 +115,7 @@ pub(in crate::report) fn marks(a: &Assessment, result: &ConstraintResult) -> Opt
             marks.insert(spoken(&citation.standing));
         }
     }
+    marks.extend(result.doubts.iter().map(|doubt| spoken(&doubt.standing)));
     if result.assessed.as_ref().is_some_and(|numbers| numbers.not_a_number_share > 0.0) {
         marks.insert("in part not a number".to_owned());
     }

@@ -52,7 +52,7 @@ fn largest(elongation: &str) -> f64 {
                 "cell_volume: {:e} µm^3, vacuole_fraction: 0, genome_length: 4 Mbp, genome_copies: 1, \
                  protein_concentration: 3e6 1/µm^3, macromolecule_fraction: 0.4, envelope_thickness: 10 nm, \
                  elongation_rate: {elongation}, protein_turnover_rate: 7e-6 1/s",
-                10.0_f64.powf(*volume)
+                libm::pow(10.0, *volume)
             );
             cell("lifestyle: cultured", &organism, "temperature: 37 °C")
         })

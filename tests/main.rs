@@ -7,6 +7,8 @@ mod run;
 mod snapshot;
 
 #[cfg(test)]
+mod cells;
+#[cfg(test)]
 mod engine;
 #[cfg(test)]
 mod layering;

@@ -9,6 +9,8 @@ mod snapshot;
 #[cfg(test)]
 mod engine;
 #[cfg(test)]
+mod hostile;
+#[cfg(test)]
 mod layering;
 #[cfg(test)]
 mod report;

@@ -16,3 +16,5 @@ mod layering;
 mod report;
 #[cfg(test)]
 mod reproducible;
+#[cfg(test)]
+mod standards;

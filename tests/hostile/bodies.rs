@@ -103,8 +103,8 @@ pub(crate) fn catalogue_file(bytes: &[u8]) {
 /// A formula: what is printed reads as the same tree and has the same value, bit by bit.
 pub(crate) fn formula(bytes: &[u8]) {
     let Ok(text) = std::str::from_utf8(bytes) else { return };
-    let scope = Names::new();
-    let read = match Formula::read(text, &scope) {
+    let scope = Names::get();
+    let read = match Formula::read(text, scope) {
         Ok(formula) => formula,
         Err(faults) => {
             assert!(!faults.is_empty(), "refused without a word");
@@ -116,10 +116,10 @@ pub(crate) fn formula(bytes: &[u8]) {
     let printed = read.root().to_string();
     // Blanks that printing adds may take a text beyond the longest that is read.
     if printed.len() <= hypobiont::formula::LONGEST {
-        let again = Formula::read(&printed, &scope).unwrap_or_else(|faults| panic!("{printed}: {faults:?}"));
+        let again = Formula::read(&printed, scope).unwrap_or_else(|faults| panic!("{printed}: {faults:?}"));
         assert_eq!(again.root(), read.root(), "{printed}");
         assert_eq!(again.dimension(), read.dimension(), "{printed}");
-        let value = |formula: &Formula| formula.evaluate(&Names::value, &|_| scope.curve_itself());
+        let value = |formula: &Formula| formula.evaluate(&Names::value, &|_| &scope.curve);
         assert_eq!(value(&again).to_bits(), value(&read).to_bits(), "{printed}");
     }
 }
@@ -195,6 +195,11 @@ impl Names {
         ("y", "", 0.75),
     ];
 
+    fn get() -> &'static Self {
+        static MADE: OnceLock<Names> = OnceLock::new();
+        MADE.get_or_init(Self::new)
+    }
+
     fn new() -> Self {
         let dimension = |unit| Unit::read(unit).expect("a unit").dimension();
         let form = Form {
@@ -209,10 +214,6 @@ impl Names {
             dimensions: Self::VALUES.map(|(name, unit, _)| (name, dimension(unit))).into(),
             curve: Curve::new(form, &points).expect("points that ascend"),
         }
-    }
-
-    fn curve_itself(&self) -> &Curve {
-        &self.curve
     }
 
     fn value(name: &str) -> f64 {

@@ -3,8 +3,9 @@
 use std::collections::{BTreeMap, BTreeSet};
 
 use super::Catalog;
-use super::entry::{Entry, RelationKind};
+use super::entry::{Entry, RelationKind, coefficient};
 use crate::formula::{Binary, Expr, ExprKind, Formula};
+use crate::math::factor::cholesky;
 use crate::quantity::Distribution;
 use crate::text::{Problem, Problems};
 
@@ -92,6 +93,7 @@ fn names(entry: &Entry, formulas: &[&Formula], problems: &mut Problems) {
                 .push(Problem::at(entry.place.clone(), format!("`{name}` of `{}` is not used", entry.id)));
         }
     }
+    correlations(entry, problems);
     for correlation in &entry.correlations {
         for name in &correlation.between {
             let uncertain = entry.parameters.get(name).is_some_and(is_uncertain);
@@ -105,6 +107,26 @@ fn names(entry: &Entry, formulas: &[&Formula], problems: &mut Problems) {
                 ));
             }
         }
+    }
+}
+
+/// The coefficients of an entry can hold together.
+fn correlations(entry: &Entry, problems: &mut Problems) {
+    let names: BTreeSet<&str> = entry
+        .correlations
+        .iter()
+        .flat_map(|correlation| correlation.between.iter().map(String::as_str))
+        .collect();
+    let names: Vec<&str> = names.into_iter().collect();
+    let between = |i: usize, j: usize| coefficient(&entry.correlations, names[i], names[j]);
+    if cholesky(names.len(), between).is_none() {
+        problems.push(
+            Problem::at(
+                entry.place.clone(),
+                format!("the correlations of `{}` contradict each other", entry.id),
+            )
+            .expected("coefficients that can hold together: their matrix must be positive definite"),
+        );
     }
 }
 

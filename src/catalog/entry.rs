@@ -186,6 +186,16 @@ pub struct Correlation {
     pub coefficient: f64,
 }
 
+/// The coefficient between two different names: 0 where none is stated.
+#[must_use]
+pub fn coefficient(correlations: &[Correlation], a: &str, b: &str) -> f64 {
+    let pair = if a < b { [a, b] } else { [b, a] };
+    correlations
+        .iter()
+        .find(|correlation| correlation.between == pair)
+        .map_or(0.0, |correlation| correlation.coefficient)
+}
+
 /// What relations, constraints and figures have in common.
 #[derive(Clone, Debug)]
 pub struct Entry {

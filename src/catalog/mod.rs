@@ -20,7 +20,7 @@ pub(crate) use read_entries::correlations as read_correlations;
 
 pub use entry::{
     Attribute, ByAttribute, Constant, Constraint, Correlation, Default, Entry, Figure, Habitat, Joint, Of,
-    Parameter, Provenance, Quantity, Relation, RelationKind, Side, Words, Work,
+    Parameter, Provenance, Quantity, Relation, RelationKind, Side, Words, Work, coefficient,
 };
 
 use crate::text::Problems;

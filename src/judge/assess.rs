@@ -230,6 +230,8 @@ impl Builder<'_> {
             required_says: constraint.required.says.clone(),
             available_formula: one_line(constraint.available.formula.text()),
             required_formula: one_line(constraint.required.formula.text()),
+            available_tex: constraint.available.formula.tex(&|name| self.symbol(name)),
+            required_tex: constraint.required.formula.tex(&|name| self.symbol(name)),
             parameters: self.parameters(&constraint.entry),
             meaning: constraint.entry.meaning.clone().unwrap_or_default(),
             exceptions: constraint.entry.exceptions.clone(),
@@ -240,6 +242,10 @@ impl Builder<'_> {
             sources: constraint.entry.sources.clone(),
             doubts: Vec::new(),
         }
+    }
+
+    fn symbol(&self, name: &str) -> Option<String> {
+        self.catalog.quantities.get(name)?.symbol.clone()
     }
 
     fn outside(&self, constraint: &Constraint, why: &Outside) -> ConstraintResult {

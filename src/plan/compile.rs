@@ -5,8 +5,9 @@ use std::collections::{BTreeMap, BTreeSet};
 use super::graph::{Arithmetic, Graph, InputKind, NodeId, Op};
 use super::resolve::{Producer, Resolver};
 use crate::candidate::Candidate;
-use crate::catalog::{ByAttribute, Catalog, Correlation, Entry};
+use crate::catalog::{ByAttribute, Catalog, Correlation, Entry, coefficient};
 use crate::formula::{Binary, Expr, ExprKind, Formula, Function, PowerSteps, power_steps};
+use crate::math::factor::cholesky;
 use crate::math::kernels;
 use crate::quantity::Distribution;
 use crate::quantity::written::Value;
@@ -73,7 +74,7 @@ impl<'a, 'r> Compiler<'a, 'r> {
         let names: BTreeSet<&String> =
             correlations.iter().flat_map(|correlation| &correlation.between).collect();
         let names: Vec<&String> = names.into_iter().collect();
-        let Some(lower) = cholesky(&names, correlations) else {
+        let Some(lower) = cholesky(names.len(), |i, j| coefficient(correlations, names[i], names[j])) else {
             problems.push(
                 place()
                     .expected("coefficients that can hold together: their matrix must be positive definite"),
@@ -359,35 +360,4 @@ impl<'a, 'r> Compiler<'a, 'r> {
         }
         self.quantity(name)
     }
-}
-
-/// The lower triangle of the correlation matrix's Cholesky factor; `None` when it is not positive definite.
-fn cholesky(names: &[&String], correlations: &[Correlation]) -> Option<Vec<Vec<f64>>> {
-    let entry = |a: &String, b: &String| {
-        if a == b {
-            return 1.0;
-        }
-        let pair = correlations.iter().find(|c| {
-            (&c.between[0] == a && &c.between[1] == b) || (&c.between[0] == b && &c.between[1] == a)
-        });
-        pair.map_or(0.0, |c| c.coefficient)
-    };
-    let mut lower: Vec<Vec<f64>> = Vec::with_capacity(names.len());
-    for (i, a) in names.iter().enumerate() {
-        let mut row = vec![0.0; i + 1];
-        for (j, b) in names.iter().enumerate().take(i + 1) {
-            let done: f64 = (0..j).map(|k| row[k] * lower.get(j).map_or(row[k], |other| other[k])).sum();
-            let rest = entry(a, b) - done;
-            if i == j {
-                if rest <= 0.0 {
-                    return None;
-                }
-                row[j] = rest.sqrt();
-            } else {
-                row[j] = rest / lower[j][j];
-            }
-        }
-        lower.push(row);
-    }
-    Some(lower)
 }

@@ -55,6 +55,17 @@ fn a_name_and_a_body_plan_alone_are_not_assessed() {
 }
 
 #[test]
+fn what_is_missing_can_be_stated_of_one_form() {
+    // Mixing along the body concerns rods, filaments and helices. Their length is stated or follows from volume and
+    // width; a diameter or a thickness would give the volume of a sphere or a disc, which have no length.
+    let found = screen(
+        "hypobiont: 1\nname: formless\nattributes: { body_plan: prokaryotic-cell }\nenvironment: { temperature: 30 °C }\n",
+    );
+    let missing = &constraint(&found, "reach-of-a-genome")["missing"];
+    assert_eq!(*missing, serde_json::json!([["cell_volume", "length"], ["form"], ["length", "width"]]));
+}
+
+#[test]
 fn limits_that_hold_apart_but_never_together_fail() {
     let candidate = format!("{OTHER}organism: {{ diameter: 275 ± 25 nm }}\n");
     let found = overlaid(APART, "", "", &candidate).json();
@@ -293,6 +304,17 @@ fn a_correlation_is_that_of_normal_scores() {
         let found = width_of(coefficient);
         assert!((found / expected - 1.0).abs() < 0.02, "{coefficient}: {found} against {expected}");
     }
+}
+
+#[test]
+fn a_correlation_with_a_resampled_quantity_is_refused() {
+    let candidate = format!(
+        "{OTHER}organism:\n  diameter: 275 ± 25 nm\n  width: {{ sample: w.csv, column: width, unit: nm }}\n\
+         correlations:\n  - {{ between: [diameter, width], coefficient: 0.5 }}\n"
+    );
+    let ended = Run::new("screen c.yaml").file("c.yaml", &candidate).file("w.csv", "width\n1\n2\n").output();
+    assert_eq!(ended.status, Some(2), "{}", ended.stdout);
+    assert!(ended.stderr.contains("`width` is resampled from data"), "{}", ended.stderr);
 }
 
 #[test]

@@ -321,8 +321,9 @@ fn standing_of<'a>(
     groups.extend(needed.into_iter().map(|name| [name.to_owned()].into()));
     let inputs: Vec<&str> =
         formulas.iter().flat_map(|formula| resolve::quantities_of(catalog, formula)).collect();
-    groups.extend(resolver.missing(&inputs));
+    groups.extend(resolver.missing(&entry.condition, &inputs));
     if !groups.is_empty() {
+        let groups = resolve::minimal(groups);
         let groups = groups.into_iter().map(|group| group.into_iter().collect()).collect();
         return Standing::Outside(Outside::Missing(groups));
     }

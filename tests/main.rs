@@ -11,6 +11,8 @@ mod cells;
 #[cfg(test)]
 mod engine;
 #[cfg(test)]
+mod hostile;
+#[cfg(test)]
 mod layering;
 #[cfg(test)]
 mod readme;
@@ -18,3 +20,5 @@ mod readme;
 mod report;
 #[cfg(test)]
 mod reproducible;
+#[cfg(test)]
+mod standards;

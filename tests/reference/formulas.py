@@ -90,7 +90,11 @@ class Formula:
 
 def curve(at, gives, axes, between, outside):
     """A function through points: straight, or by the monotone cubics of Fritsch and Butland (1984)."""
-    scale = {"linear": (lambda x: x, lambda x: x), "log": (np.log, np.exp)}
+    scale = {
+        "linear": (lambda x: x, lambda x: x),
+        "log": (np.log, np.exp),
+        "reciprocal": (lambda x: -1 / x, lambda x: -1 / x),
+    }
     (to_x, _), (to_y, from_y) = (scale[axis] for axis in axes.split("-"))
     points, heights = to_x(np.array(at)), to_y(np.array(gives))
     if between == "monotone":

@@ -52,11 +52,13 @@ class Writer(ast.NodeTransformer):
             return ast.Call(ast.Name("np.where"), arguments, [])
         if name in self.entry.curves:
             form = self.entry.node["curves"][name]
-            if form["between"] != "straight" or form["axes"] != "linear-log":
+            if form["between"] != "straight" or form["axes"] != "reciprocal-log":
                 raise NotImplementedError(name)
             at, gives = ([catalogue.exact(x) for x in form[key]] for key in ("at", "gives"))
-            points = [ast.Constant(at), ast.Constant(np.log(gives).tolist())]
-            return ast.Call(ast.Name("np.exp"), [ast.Call(ast.Name("np.interp"), [*arguments, *points], [])], [])
+            places = ast.Constant([-1 / x for x in at])
+            place = ast.BinOp(ast.Constant(-1), ast.Div(), arguments[0])
+            height = ast.Call(ast.Name("np.interp"), [place, places, ast.Constant(np.log(gives).tolist())], [])
+            return ast.Call(ast.Name("np.exp"), [height], [])
         return ast.Call(ast.Name(f"np.{NAMES.get(name, name)}"), arguments, [])
 
     def visit_BinOp(self, node):

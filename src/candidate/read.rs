@@ -320,11 +320,6 @@ impl Reader<'_> {
                     Some(Value::Unknown(Distribution::Exact(_))) => {
                         format!("`{name}` is exact and cannot be correlated")
                     }
-                    Some(Value::Unknown(distribution)) if distribution.file().is_some() => {
-                        format!(
-                            "`{name}` is resampled from data, whose rows say how it goes with others, and cannot be correlated"
-                        )
-                    }
                     Some(Value::Unknown(_)) => continue,
                 };
                 self.problems.push(

@@ -7,7 +7,11 @@ mod run;
 mod snapshot;
 
 #[cfg(test)]
+mod cells;
+#[cfg(test)]
 mod engine;
+#[cfg(test)]
+mod hostile;
 #[cfg(test)]
 mod layering;
 #[cfg(test)]
@@ -16,3 +20,5 @@ mod readme;
 mod report;
 #[cfg(test)]
 mod reproducible;
+#[cfg(test)]
+mod standards;

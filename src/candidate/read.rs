@@ -314,9 +314,6 @@ impl Reader<'_> {
                 let message = match given.get(name).map(|reading| &reading.value) {
                     None => format!("`{name}` is correlated but not stated by this candidate"),
                     Some(Value::Free(_)) => format!("`{name}` is free and cannot be correlated"),
-                    Some(Value::Unknown(distribution)) if distribution.file().is_some() => {
-                        format!("`{name}` comes from a file, whose rows say how its columns go together")
-                    }
                     Some(Value::Unknown(Distribution::Exact(_))) => {
                         format!("`{name}` is exact and cannot be correlated")
                     }

@@ -10,6 +10,8 @@ mod power;
 mod resolve;
 mod schedule;
 mod support;
+#[cfg(test)]
+mod tests;
 
 use std::collections::{BTreeMap, BTreeSet};
 

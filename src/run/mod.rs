@@ -10,6 +10,8 @@ mod machine;
 mod margins;
 mod record;
 mod rounds;
+#[cfg(test)]
+mod tests;
 
 pub use case::{Case, Setting};
 pub use free::{Decisive, choose};

@@ -462,8 +462,7 @@ fn values_that_span_hundreds_of_decades_keep_their_quantiles() {
   source: invented
 ";
     let candidate = format!("{OTHER}organism: {{ diameter: {{ min: 1 nm, max: 601 nm }} }}\n");
-    let found =
-        overlaid(APART, "", "", &candidate).file("over/figures/test.yaml", figure).json();
+    let found = overlaid(APART, "", "", &candidate).file("over/figures/test.yaml", figure).json();
     let list = found["quantities"].as_array().unwrap();
     let wide = list.iter().find(|quantity| quantity["name"] == "wide").unwrap();
     // The quantiles of the exponent are -270, 0 and 270, each within 1.2 at most.

@@ -314,7 +314,7 @@ fn a_correlation_with_a_resampled_quantity_is_refused() {
     );
     let ended = Run::new("screen c.yaml").file("c.yaml", &candidate).file("w.csv", "width\n1\n2\n").output();
     assert_eq!(ended.status, Some(2), "{}", ended.stdout);
-    assert!(ended.stderr.contains("`width` is resampled from data"), "{}", ended.stderr);
+    assert!(ended.stderr.contains("`width` comes from a file"), "{}", ended.stderr);
 }
 
 #[test]
@@ -448,6 +448,28 @@ fn an_adopted_parameter_replaces_one_number_and_is_reported() {
         found["quantities"].as_array().unwrap().iter().find(|q| q["name"] == "limit.smallest").unwrap();
     assert_eq!(adopted["origin"], "adopted");
     assert_eq!(adopted["median"], 150.0);
+}
+
+#[test]
+fn values_that_span_hundreds_of_decades_keep_their_quantiles() {
+    let figure = "
+- id: wide
+  title: From e^-300 to e^300
+  applies_to: { body_plan: other }
+  basis: physical
+  formula: 'exp((diameter - 301 [nm]) / 1 [nm])'
+  unit: \"\"
+  source: invented
+";
+    let candidate = format!("{OTHER}organism: {{ diameter: {{ min: 1 nm, max: 601 nm }} }}\n");
+    let found = overlaid(APART, "", "", &candidate).file("over/figures/test.yaml", figure).json();
+    let list = found["quantities"].as_array().unwrap();
+    let wide = list.iter().find(|quantity| quantity["name"] == "wide").unwrap();
+    // The quantiles of the exponent are -270, 0 and 270, each within 1.2 at most.
+    for (quantile, expected) in [("low", -270.0), ("median", 0.0), ("high", 270.0)] {
+        let exponent = libm::log(wide[quantile].as_f64().unwrap());
+        assert!((exponent - expected).abs() < 8.0, "{quantile}: {exponent}");
+    }
 }
 
 #[test]

@@ -12,8 +12,8 @@ pub(super) struct Part {
     pub(super) margins: Vec<f32>,
     /// `[constraint][word]`, one bit a draw.
     pub(super) holds: Vec<u64>,
-    /// `[kept node][draw]`, values over the node's scale; empty beyond the first draws.
-    pub(super) kept: Vec<f32>,
+    /// `[kept node][draw]`; empty beyond the first draws. At double precision: a rate may span hundreds of decades.
+    pub(super) kept: Vec<f64>,
 }
 
 impl Part {
@@ -69,9 +69,9 @@ impl Record {
         margins
     }
 
-    /// The values of a kept node in the first draws, over its scale.
+    /// The values of a kept node in the first draws.
     #[must_use]
-    pub(super) fn kept(&self, position: usize) -> Vec<f32> {
+    pub(super) fn kept(&self, position: usize) -> Vec<f64> {
         let mut values = Vec::with_capacity(self.draws.min(16 * BLOCK));
         for part in self.parts.iter().filter(|part| !part.kept.is_empty()) {
             values.extend_from_slice(&part.kept[position * part.draws..][..part.draws]);

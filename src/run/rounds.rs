@@ -2,6 +2,8 @@
 //!
 //! After JCGM 101:2008, 7.9: a result is settled when twice its standard error is below the numerical tolerance.
 
+use std::ops::Range;
+
 use rayon::iter::{
     IndexedParallelIterator, IntoParallelIterator, IntoParallelRefMutIterator, ParallelIterator,
 };
@@ -71,8 +73,6 @@ pub struct Outcome {
 #[derive(Clone, Copy, Debug)]
 struct Kept {
     node: NodeId,
-    /// A power of two near its first value, so that single precision holds whatever unit it is in.
-    scale: f64,
     /// 5 % quantile, median, 95 % quantile in the first draws.
     quantiles: [f64; 3],
 }
@@ -85,9 +85,7 @@ impl Outcome {
     /// The values of a kept node in the first draws; `None` for a node that has one value for all draws.
     #[must_use]
     pub fn values(&self, node: NodeId) -> Option<Vec<f64>> {
-        let at = self.position(node)?;
-        let scale = self.kept[at].scale;
-        Some(self.record.kept(at).into_iter().map(|value| scale * f64::from(value)).collect())
+        Some(self.record.kept(self.position(node)?))
     }
 
     /// 5 % quantile, median and 95 % quantile of a kept node; `None` for a node that has one value for all draws.
@@ -118,25 +116,24 @@ pub fn run(plan: &Plan, cases: &[Case], settings: Settings) -> Vec<Outcome> {
     let nodes: Vec<NodeId> = plan.outputs().into_iter().filter(|node| is_column(plan, *node)).collect();
     let mut outcomes: Vec<Outcome> = cases
         .iter()
-        .map(|case| Outcome {
+        .map(|_| Outcome {
             record: Record::default(),
             statistics: Vec::new(),
             settled: None,
-            kept: scaled(plan, &streams, case, &nodes),
+            kept: nodes.iter().map(|node| Kept { node: *node, quantiles: [f64::NAN; 3] }).collect(),
         })
         .collect();
     let mut open: Vec<usize> = (0..cases.len()).collect();
     let (mut done, mut goal) = (0, settings.draws.unwrap_or(FIRST_ROUND));
     loop {
-        let batch: Vec<(&Case, Vec<Kept>)> =
-            open.iter().map(|at| (&cases[*at], outcomes[*at].kept.clone())).collect();
+        let batch: Vec<&Case> = open.iter().map(|at| &cases[*at]).collect();
         let blocks: Vec<Vec<Part>> = (done..goal)
             .step_by(BLOCK)
             .collect::<Vec<usize>>()
             .into_par_iter()
             .map_init(
                 || Workplace::new(plan),
-                |place, first| place.block(plan, &streams, &batch, first, BLOCK.min(goal - first)),
+                |place, first| place.block(plan, &streams, &batch, &nodes, first..goal.min(first + BLOCK)),
             )
             .collect();
         for parts in blocks {
@@ -177,37 +174,37 @@ impl Workplace {
         Self { machine: Machine::new(plan), ratio: vec![0.0; BLOCK], dex: vec![0.0; BLOCK] }
     }
 
-    /// The draws `first..first + len` of several cases: a part for each.
+    /// These draws of several cases: a part for each.
     fn block(
         &mut self,
         plan: &Plan,
         streams: &[Stream],
-        cases: &[(&Case, Vec<Kept>)],
-        first: usize,
-        len: usize,
+        cases: &[&Case],
+        kept: &[NodeId],
+        draws: Range<usize>,
     ) -> Vec<Part> {
-        let number = first as u64;
-        if let Some((any, _)) = cases.first() {
+        let (number, len) = (draws.start as u64, draws.len());
+        if let Some(any) = cases.first() {
             self.machine.shared(plan, streams, any, number, len);
         }
         let words = len.div_ceil(64);
         cases
             .iter()
-            .map(|(case, kept)| {
+            .map(|case| {
                 self.machine.case(plan, streams, case, number, len);
-                let keeping = if first < FIRST_ROUND { kept.len() } else { 0 };
-                let mut part = Part::new(len, plan.constraints.len(), keeping);
+                let kept = if draws.start < FIRST_ROUND { kept } else { &[] };
+                let mut part = Part::new(len, plan.constraints.len(), kept.len());
                 for (at, planned) in plan.constraints.iter().enumerate() {
                     let available = self.machine.values(plan, case, planned.available, len);
                     let required = self.machine.values(plan, case, planned.required, len);
                     let bits = &mut part.holds[at * words..][..words];
                     margins(available, required, &mut self.ratio[..len], &mut self.dex[..len], bits);
                     // Held at single precision: holding was decided before.
-                    narrow(&mut part.margins[at * len..][..len], &self.dex, 1.0);
+                    narrow(&mut part.margins[at * len..][..len], &self.dex);
                 }
-                for (at, kept) in kept.iter().enumerate().take(keeping) {
-                    if let Operand::Column(column) = self.machine.values(plan, case, kept.node, len) {
-                        narrow(&mut part.kept[at * len..][..len], column, 1.0 / kept.scale);
+                for (at, node) in kept.iter().enumerate() {
+                    if let Operand::Column(column) = self.machine.values(plan, case, *node, len) {
+                        part.kept[at * len..][..len].copy_from_slice(column);
                     }
                 }
                 part
@@ -220,32 +217,18 @@ impl Workplace {
 fn summarise(outcome: &mut Outcome) {
     let record = &outcome.record;
     outcome.kept.par_iter_mut().enumerate().for_each(|(at, kept)| {
-        let values = record.kept(at);
-        kept.quantiles = ranks(&values, interval_ranks(values.len())).map(|value| kept.scale * value);
+        let mut values = record.kept(at);
+        let ranks = interval_ranks(values.len());
+        kept.quantiles = quantiles::order_statistics_f64(&mut values, ranks);
     });
 }
 
-/// Single precision of a column times a factor.
+/// Single precision of a column.
 #[allow(clippy::cast_possible_truncation)]
-fn narrow(out: &mut [f32], column: &[f64], factor: f64) {
+fn narrow(out: &mut [f32], column: &[f64]) {
     for (out, value) in out.iter_mut().zip(column) {
-        *out = (value * factor) as f32;
+        *out = *value as f32;
     }
-}
-
-/// The nodes to keep, with powers of two near their values in the first draw.
-fn scaled(plan: &Plan, streams: &[Stream], case: &Case, nodes: &[NodeId]) -> Vec<Kept> {
-    let mut machine = Machine::new(plan);
-    machine.shared(plan, streams, case, 0, 1);
-    machine.case(plan, streams, case, 0, 1);
-    let scale = |node: NodeId| match machine.values(plan, case, node, 1) {
-        // The exponent bits alone: a power of two.
-        Operand::Column([value]) if value.is_normal() => {
-            f64::from_bits(value.abs().to_bits() & 0x7ff0_0000_0000_0000)
-        }
-        _ => 1.0,
-    };
-    nodes.iter().map(|node| Kept { node: *node, scale: scale(*node), quantiles: [f64::NAN; 3] }).collect()
 }
 
 fn statistics(record: &Record, constraint: usize) -> Statistics {

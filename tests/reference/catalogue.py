@@ -149,6 +149,7 @@ class Candidate:
         self.attributes = {
             name: attribute["default"] for name, attribute in catalogue.attributes.items() if "default" in attribute
         } | node["attributes"]
+        self.stated_attributes = node["attributes"].keys()
         environment = dict(node.get("environment") or {})
         habitat = environment.pop("habitat", None)
         given = (node.get("organism") or {}) | environment

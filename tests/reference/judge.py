@@ -33,8 +33,10 @@ class Judge:
         }
 
     def run(self):
-        attributes = self.printed["candidate"]["attributes"]
-        self.result.same("attributes", attributes, self.candidate.attributes)
+        # The program may leave out defaults that nothing asked for.
+        attributes, ours = self.printed["candidate"]["attributes"], self.candidate.attributes
+        self.result.same("attributes", attributes, {name: ours.get(name) for name in attributes})
+        self.result.same("stated attributes left out", self.candidate.stated_attributes - attributes.keys(), set())
         # Numbers can be set against each other only where both speak of the same ones.
         if self.standings() and self.origins():
             self.numbers()

@@ -9,6 +9,8 @@ mod snapshot;
 #[cfg(test)]
 mod engine;
 #[cfg(test)]
+mod golden;
+#[cfg(test)]
 mod hostile;
 #[cfg(test)]
 mod layering;

@@ -4,7 +4,8 @@
 //! holds, the smallest, the next smallest, ... median margin over the constraints that a free number touches, nearness
 //! to the typical values. A number that every constraint pulls the same way goes to that end without a search. The
 //! others are searched on the first draws of the same streams: 17 points per number on its scale, in passes over the
-//! numbers in order of name and over the ends of coupled pairs, until nothing changes.
+//! numbers in order of name and over coupled pairs, until nothing changes. Of a pair the ends are tried, and slanting
+//! steps from where it stands: where two limits pull against each other, moving one number alone makes one of them worse.
 
 use std::cmp::Ordering;
 
@@ -15,12 +16,29 @@ use crate::math::streams::Stream;
 use crate::plan::{Direction, Level, NodeId, Plan, operands};
 use crate::quantity::FreeRange;
 
-use super::case::Case;
+use super::case::{Case, Setting};
 use super::machine::{BLOCK, compute};
 use super::margins::margins;
 
 /// Points tried per number.
 const POINTS: u32 = 17;
+/// Slanting steps of a pair, in distances between neighbouring points: in twelve directions, from far to near.
+const SLANTS: [(f64, f64); 12] = [
+    (1.0, 1.0),
+    (1.0, -1.0),
+    (-1.0, 1.0),
+    (-1.0, -1.0),
+    (1.0, 2.0),
+    (1.0, -2.0),
+    (-1.0, 2.0),
+    (-1.0, -2.0),
+    (2.0, 1.0),
+    (2.0, -1.0),
+    (-2.0, 1.0),
+    (-2.0, -1.0),
+];
+/// How far the slanting steps go.
+const STRIDES: [f64; 3] = [4.0, 1.0, 0.25];
 /// Passes over the numbers at most.
 const PASSES: usize = 8;
 /// Margins closer than this (dex) count as equal, so that rounding decides nothing.
@@ -264,17 +282,16 @@ impl<'a> Search<'a> {
             for free in searched {
                 let range = self.case.free[*free].range;
                 let trials: Vec<Vec<(usize, f64)>> =
-                    (0..POINTS).map(|point| vec![(*free, point_of(&range, point))]).collect();
+                    (0..POINTS).map(|point| vec![(*free, value_at(&range, place(point)))]).collect();
                 changed |= self.try_all(&trials, &mut best);
             }
             for (position, one) in searched.iter().enumerate() {
                 for other in &searched[position + 1..] {
                     if self.coupled(*one, *other) {
-                        let (a, b) = (self.case.free[*one].range, self.case.free[*other].range);
-                        let ends = [(a.low, b.low), (a.low, b.high), (a.high, b.low), (a.high, b.high)];
-                        let trials: Vec<Vec<(usize, f64)>> =
-                            ends.iter().map(|(a, b)| vec![(*one, *a), (*other, *b)]).collect();
-                        changed |= self.try_all(&trials, &mut best);
+                        changed |= self.try_all(&self.ends(*one, *other), &mut best);
+                        for stride in STRIDES {
+                            changed |= self.try_all(&self.slants(*one, *other, stride), &mut best);
+                        }
                     }
                 }
             }
@@ -282,6 +299,22 @@ impl<'a> Search<'a> {
                 break;
             }
         }
+    }
+
+    /// Both numbers of a pair at an end of their ranges.
+    fn ends(&self, one: usize, other: usize) -> Vec<Vec<(usize, f64)>> {
+        let (a, b) = (self.case.free[one].range, self.case.free[other].range);
+        let ends = [(a.low, b.low), (a.low, b.high), (a.high, b.low), (a.high, b.high)];
+        ends.iter().map(|(a, b)| vec![(one, *a), (other, *b)]).collect()
+    }
+
+    /// Both numbers of a pair, moved from where they stand.
+    fn slants(&self, one: usize, other: usize, stride: f64) -> Vec<Vec<(usize, f64)>> {
+        let moved = |free: usize, steps: f64| {
+            let Setting { range, value } = &self.case.free[free];
+            (free, value_at(range, position(range, *value) + stride * steps / f64::from(POINTS - 1)))
+        };
+        SLANTS.iter().map(|(a, b)| vec![moved(one, *a), moved(other, *b)]).collect()
     }
 
     /// Tries settings of the same numbers and leaves the best of them, or what stood before.
@@ -330,15 +363,20 @@ fn position(range: &FreeRange, value: f64) -> f64 {
     }
 }
 
-fn point_of(range: &FreeRange, point: u32) -> f64 {
-    let share = f64::from(point) / f64::from(POINTS - 1);
-    if point == 0 {
+/// Where a point stands in a range.
+fn place(point: u32) -> f64 {
+    f64::from(point) / f64::from(POINTS - 1)
+}
+
+/// The value at a place from 0 to 1 on the range's scale; the nearest end beyond.
+fn value_at(range: &FreeRange, place: f64) -> f64 {
+    if place <= 0.0 {
         range.low
-    } else if point == POINTS - 1 {
+    } else if place >= 1.0 {
         range.high
     } else if range.logarithmic {
-        range.low * kernels::exp(share * kernels::ln(range.high / range.low))
+        range.low * kernels::exp(place * kernels::ln(range.high / range.low))
     } else {
-        range.low + share * (range.high - range.low)
+        range.low + place * (range.high - range.low)
     }
 }

@@ -55,7 +55,7 @@ fn read(relations: &str, constraints: &[(&str, &str)], candidate: &str) -> (Cata
 fn bits(catalog: &Catalog, candidate: &Candidate) -> String {
     let plan = Plan::new(catalog, candidate, &[]).unwrap_or_else(|problems| panic!("{problems}"));
     let mut case = Case::new(catalog, &plan, candidate);
-    run::choose(&plan, &mut case, &run::streams(&plan, 1));
+    let _ = run::choose(&plan, &mut case, &run::streams(&plan, 1), 0.95);
     let settings = Settings { seed: 1, draws: Some(10_000), pass_at: 0.95, fail_at: 0.05 };
     let outcome = run::run(&plan, std::slice::from_ref(&case), settings).remove(0);
     let mut text = String::new();

@@ -7,6 +7,8 @@ mod run;
 mod snapshot;
 
 #[cfg(test)]
+mod cells;
+#[cfg(test)]
 mod engine;
 #[cfg(test)]
 mod golden;
@@ -14,6 +16,8 @@ mod golden;
 mod hostile;
 #[cfg(test)]
 mod layering;
+#[cfg(test)]
+mod readme;
 #[cfg(test)]
 mod report;
 #[cfg(test)]

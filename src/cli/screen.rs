@@ -1,5 +1,6 @@
 //! `hypobiont screen`: the main job.
 
+use std::collections::BTreeSet;
 use std::io::{IsTerminal, stderr, stdout};
 use std::path::{Path, PathBuf};
 use std::sync::Mutex;
@@ -34,10 +35,10 @@ pub(super) struct Screen {
     #[arg(long, value_name = "FILE|DIR")]
     output: Option<PathBuf>,
     /// Make exactly N draws, the first N of the same draws [default: double from 65536 until settled]
-    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u64).range(1..=MOST_DRAWS))]
+    #[arg(long, value_name = "N", value_parser = draws)]
     draws: Option<u64>,
     /// Seed of the random streams
-    #[arg(long, value_name = "N", default_value_t = 1)]
+    #[arg(long, value_name = "N", default_value_t = 1, value_parser = seed, allow_negative_numbers = true)]
     seed: u64,
     #[command(flatten)]
     overlays: Overlays,
@@ -89,17 +90,28 @@ impl Gate {
 fn share(text: &str) -> Result<f64, String> {
     match text.parse::<f64>() {
         Ok(value) if (0.0..=1.0).contains(&value) => Ok(value),
-        _ => Err("a share is a number from 0 to 1".to_owned()),
+        _ => Err("a share is a number from 0 to 1, such as 0.95".to_owned()),
     }
+}
+
+fn draws(text: &str) -> Result<u64, String> {
+    match text.parse() {
+        Ok(draws) if (1..=MOST_DRAWS).contains(&draws) => Ok(draws),
+        _ => Err(format!("a number of draws is a whole number from 1 to {MOST_DRAWS}")),
+    }
+}
+
+fn seed(text: &str) -> Result<u64, String> {
+    text.parse().map_err(|_| format!("a seed is a whole number from 0 to {}", u64::MAX))
 }
 
 impl Screen {
     pub(super) fn run(&self) -> Ending {
         if self.pass_at <= self.fail_at {
-            output::complain(&format!(
-                "--pass-at {} is not above --fail-at {}: nothing could be marginal\n",
-                self.pass_at, self.fail_at
-            ));
+            let message = format!("--pass-at {} is not above --fail-at {}", self.pass_at, self.fail_at);
+            let mut problems = Problems::new();
+            problems.push(Problem::whole(message).expected("room between them, as in 0.95 and 0.05"));
+            report(&problems);
             return Ending::BadInput;
         }
         let catalog = match Catalog::load(&self.overlays.folders) {
@@ -110,11 +122,12 @@ impl Screen {
             }
         };
         let mut problems = self.unknown_ids(&catalog);
-        if !problems.is_empty() {
+        let known = problems.is_empty();
+        let candidates = self.read(&catalog, &mut problems);
+        if !known {
             report(&problems);
             return Ending::BadInput;
         }
-        let candidates = self.read(&catalog, &mut problems);
         let asked = Asked {
             settings: Settings {
                 seed: self.seed,
@@ -197,9 +210,11 @@ impl Screen {
             None => output::print(&reports::render(format, assessments, several, &options)),
             Some(path) if path.is_dir() => {
                 let mut ending = Ending::Ran;
+                let mut taken = BTreeSet::new();
                 for assessment in assessments {
                     let text = reports::render(format, std::slice::from_ref(assessment), false, &options);
-                    ending = ending.max(output::save(&path.join(file_name(assessment, format)), &text));
+                    let name = file_name(assessment, format, &mut taken);
+                    ending = ending.max(output::save(&path.join(name), &text));
                 }
                 ending
             }
@@ -241,13 +256,16 @@ fn quoted(word: &str) -> String {
     }
 }
 
-/// `stem-2.md` for the second document of `stem.yaml`.
-fn file_name(assessment: &Assessment, format: Format) -> String {
+/// `stem-2.md` for the second document of `stem.yaml`; of two files with one stem the later gets another number.
+fn file_name(assessment: &Assessment, format: Format, taken: &mut BTreeSet<String>) -> String {
     let path = Path::new(&assessment.file);
     let stem = path.file_stem().map(|stem| stem.to_string_lossy().into_owned()).filter(|stem| stem != "-");
     let stem = stem.unwrap_or_else(|| "candidate".to_owned());
-    let number = if assessment.document > 1 { format!("-{}", assessment.document) } else { String::new() };
-    format!("{stem}{number}.{}", format.ending())
+    let names = (assessment.document..).map(|number| {
+        let number = if number > 1 { format!("-{number}") } else { String::new() };
+        format!("{stem}{number}.{}", format.ending())
+    });
+    names.into_iter().find(|name| taken.insert(name.clone())).unwrap_or(stem)
 }
 
 /// Screens with progress on standard error beyond two seconds; wrong candidates are left out.

@@ -14,7 +14,7 @@ mod rounds;
 mod tests;
 
 pub use case::{Case, Setting};
-pub use free::{Decisive, choose, decisive};
+pub use free::{Decisive, choose};
 pub use machine::{BLOCK, streams};
 pub use record::Record;
 pub use rounds::{CAP, FIRST_ROUND, Outcome, Settings, Statistics, chance_error, interval_ranks, run};

@@ -128,7 +128,7 @@ fn the_search_finds_what_a_search_of_all_points_finds() {
             })
             .collect();
         let mut ready = ready(QUANTITIES, &text, "size: 1");
-        choose(&ready.plan, &mut ready.case, &streams(&ready.plan, 1));
+        let _ = choose(&ready.plan, &mut ready.case, &streams(&ready.plan, 1), 0.95);
         let chosen = [ready.case.free[0].value, ready.case.free[1].value];
         free += usize::from(chosen.iter().all(|value| ![1.0, 9.0, 0.1, 10.0].contains(value)));
         let found = Objective::of(&ready);

@@ -486,3 +486,23 @@ fn fixed_draws_are_a_prefix_and_leave_settled_out() {
     let default = overlaid(APART, "", "", &candidate).json();
     assert_eq!(default["constraints"], many["constraints"], "the default is the same draws");
 }
+
+#[test]
+fn a_run_that_does_not_settle_says_so() {
+    // 5 % of the draws lie two dex lower, whatever their number: the 5 % quantile cannot be told from them.
+    let limit = |number: usize| {
+        format!(
+            "- id: limit-{number}\n  title: Limit\n  family: one\n  basis: physical\n  available: {{ says: has, formula: diameter * \
+             luck }}\n  required: {{ says: needs, formula: diameter }}\n  parameters: {{ luck: {{ values: [1e-3, 0.1], weights: [0.05, \
+             0.95] }} }}\n  meaning: Invented.\n  source: invented\n"
+        )
+    };
+    let constraints: String = (0..8).map(limit).collect();
+    let candidate = format!("{OTHER}organism: {{ diameter: 300 nm }}\n");
+    let found = overlaid(&constraints, "", "", &candidate).json();
+    assert_eq!(found["run"]["settled"], false);
+    assert_eq!(found["run"]["draws"], found["run"]["cap"]);
+    let codes: Vec<&str> =
+        found["warnings"].as_array().unwrap().iter().filter_map(|warning| warning["code"].as_str()).collect();
+    assert!(codes.contains(&"cap-reached"), "{codes:?}");
+}

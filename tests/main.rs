@@ -11,6 +11,8 @@ mod cells;
 #[cfg(test)]
 mod engine;
 #[cfg(test)]
+mod golden;
+#[cfg(test)]
 mod hostile;
 #[cfg(test)]
 mod layering;

@@ -4,7 +4,8 @@
 //! holds, the smallest, the next smallest, ... median margin over the constraints that a free number touches, nearness
 //! to the typical values. A number that every constraint pulls the same way goes to that end without a search. The
 //! others are searched on the first draws of the same streams: 17 points per number on its scale, in passes over the
-//! numbers in order of name and over the ends of coupled pairs, until nothing changes.
+//! numbers in order of name and over coupled pairs, until nothing changes. Of a pair the ends are tried, and slanting
+//! steps from where it stands: where two limits pull against each other, moving one number alone makes one of them worse.
 
 use std::cmp::Ordering;
 use std::collections::BTreeMap;
@@ -16,12 +17,29 @@ use crate::math::streams::Stream;
 use crate::plan::{Direction, Level, NodeId, Plan, operands};
 use crate::quantity::FreeRange;
 
-use super::case::Case;
+use super::case::{Case, Setting};
 use super::machine::{BLOCK, compute};
 use super::margins::{holding, ratios};
 
 /// Points tried per number.
 const POINTS: u32 = 17;
+/// Slanting steps of a pair, in distances between neighbouring points.
+const SLANTS: [(f64, f64); 12] = [
+    (1.0, 1.0),
+    (1.0, -1.0),
+    (-1.0, 1.0),
+    (-1.0, -1.0),
+    (1.0, 2.0),
+    (1.0, -2.0),
+    (-1.0, 2.0),
+    (-1.0, -2.0),
+    (2.0, 1.0),
+    (2.0, -1.0),
+    (-2.0, 1.0),
+    (-2.0, -1.0),
+];
+/// How far slanting steps go, from far to near.
+const STRIDES: [f64; 3] = [4.0, 1.0, 0.25];
 /// Passes over the numbers at most.
 const PASSES: usize = 8;
 /// Margins closer than this (dex) count as equal, so that rounding decides nothing.
@@ -258,7 +276,15 @@ impl<'a> Search<'a> {
                 }
                 let trials = self.trials(one, other);
                 changes += u32::from(self.try_all(&trials, &mut best));
-                tried.insert((one, other), changes);
+                let standing = changes;
+                if one != other {
+                    for stride in STRIDES {
+                        let trials = self.slants(one, other, stride);
+                        changes += u32::from(self.try_all(&trials, &mut best));
+                    }
+                }
+                // From where a slanting step has led, another may lead further.
+                tried.insert((one, other), standing);
             }
             if changes == before {
                 break;
@@ -270,10 +296,20 @@ impl<'a> Search<'a> {
     fn trials(&self, one: usize, other: usize) -> Vec<Vec<(usize, f64)>> {
         let (a, b) = (self.case.free[one].range, self.case.free[other].range);
         if one == other {
-            return (0..POINTS).map(|point| vec![(one, point_of(&a, point))]).collect();
+            let last = f64::from(POINTS - 1);
+            return (0..POINTS).map(|point| vec![(one, value_at(&a, f64::from(point) / last))]).collect();
         }
         let ends = [(a.low, b.low), (a.low, b.high), (a.high, b.low), (a.high, b.high)];
         ends.iter().map(|(a, b)| vec![(one, *a), (other, *b)]).collect()
+    }
+
+    /// Both numbers of a pair, moved from where they stand.
+    fn slants(&self, one: usize, other: usize, stride: f64) -> Vec<Vec<(usize, f64)>> {
+        let moved = |free: usize, steps: f64| {
+            let Setting { range, value } = &self.case.free[free];
+            (free, value_at(range, position(range, *value) + stride * steps / f64::from(POINTS - 1)))
+        };
+        SLANTS.iter().map(|(a, b)| vec![moved(one, *a), moved(other, *b)]).collect()
     }
 
     fn decisive(&mut self, share: f64) -> Vec<Decisive> {
@@ -351,15 +387,15 @@ fn position(range: &FreeRange, value: f64) -> f64 {
     }
 }
 
-fn point_of(range: &FreeRange, point: u32) -> f64 {
-    let share = f64::from(point) / f64::from(POINTS - 1);
-    if point == 0 {
+/// The value at a place from 0 to 1 on the range's scale; the nearest end beyond.
+fn value_at(range: &FreeRange, place: f64) -> f64 {
+    if place <= 0.0 {
         range.low
-    } else if point == POINTS - 1 {
+    } else if place >= 1.0 {
         range.high
     } else if range.logarithmic {
-        range.low * kernels::exp(share * kernels::ln(range.high / range.low))
+        range.low * kernels::exp(place * kernels::ln(range.high / range.low))
     } else {
-        range.low + share * (range.high - range.low)
+        range.low + place * (range.high - range.low)
     }
 }

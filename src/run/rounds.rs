@@ -52,7 +52,7 @@ pub struct Statistics {
     pub low: f64,
     /// 95 % quantile.
     pub high: f64,
-    /// The largest of twice the standard errors of the three.
+    /// The largest of twice the standard errors of the three; infinite where one of them may be infinite or finite.
     pub twice_error: f64,
 }
 
@@ -247,9 +247,13 @@ fn statistics(record: &Record, constraint: usize) -> Statistics {
     let values = ranks(&margins, [centre[0], centre[1], centre[2], a, b, c, d, e, f]);
     let twice_error = values[3..]
         .chunks(2)
-        // Ends that are infinite do not move with more draws.
-        .map(|ends| if ends[0] == ends[1] { 0.0 } else { ends[1] - ends[0] })
-        .filter(|error| error.is_finite())
+        .map(|ends| match ends[1] - ends[0] {
+            // Infinite on both sides, or not a number on both: more draws do not move it.
+            _ if ends[0] == ends[1] || ends[0].is_nan() && ends[1].is_nan() => 0.0,
+            // On one side only: more draws decide.
+            error if error.is_nan() => f64::INFINITY,
+            error => error,
+        })
         .fold(0.0, f64::max);
     Statistics {
         holding: record.holding(constraint),

@@ -66,7 +66,7 @@ fn values(candidate: &Candidate, quantity: &str, seed: u64) -> Vec<f64> {
     let settings = Settings { seed, draws: Some(FIRST_ROUND), pass_at: 0.95, fail_at: 0.05 };
     let outcome = run::run(&plan, &[case], settings).remove(0);
     let node = plan.quantities.iter().find(|planned| planned.name == quantity).unwrap().node;
-    let mut values = outcome.values(node).unwrap().to_vec();
+    let mut values = outcome.values(node).unwrap();
     values.sort_by(f64::total_cmp);
     values
 }

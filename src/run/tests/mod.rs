@@ -17,7 +17,7 @@ const ATTRIBUTES: &str = "body_plan: { about: any, words: { other: any } }\n";
 /// What a run needs of one candidate.
 struct Ready {
     catalog: Catalog,
-    candidate: Candidate,
+
     plan: Plan,
     case: Case,
 }
@@ -38,7 +38,7 @@ fn try_ready(quantities: &str, constraints: &str, organism: &str) -> Result<Read
     let candidate = candidate(&catalog, organism);
     let plan = Plan::new(&catalog, &candidate, &[])?;
     let case = Case::new(&catalog, &plan, &candidate);
-    Ok(Ready { catalog, candidate, plan, case })
+    Ok(Ready { catalog, plan, case })
 }
 
 fn candidate(catalog: &Catalog, organism: &str) -> Candidate {

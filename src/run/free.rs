@@ -4,8 +4,9 @@
 //! holds, the smallest, the next smallest, ... median margin over the constraints that a free number touches, nearness
 //! to the typical values. A number that every constraint pulls the same way goes to that end without a search. The
 //! others are searched on the first draws of the same streams: 17 points per number on its scale, in passes over the
-//! numbers in order of name and over coupled pairs, until nothing changes. Of a pair the ends are tried, and slanting
-//! steps from where it stands: where two limits pull against each other, moving one number alone makes one of them worse.
+//! numbers in order of name and over the ends of coupled pairs, until nothing changes. Where two limits pull against each
+//! other, moving one number alone may make one of them worse: while something does not hold, slanting steps of coupled
+//! pairs are tried too, for the chances alone, since verdicts hang on them.
 
 use std::cmp::Ordering;
 use std::collections::BTreeMap;
@@ -38,7 +39,7 @@ const SLANTS: [(f64, f64); 12] = [
     (-2.0, 1.0),
     (-2.0, -1.0),
 ];
-/// How far slanting steps go, from far to near.
+/// How far slanting steps go.
 const STRIDES: [f64; 3] = [4.0, 1.0, 0.25];
 /// Passes over the numbers at most.
 const PASSES: usize = 8;
@@ -111,6 +112,15 @@ impl Score {
         };
         self.chances.cmp(&other.chances).then_with(medians).then_with(distance) == Ordering::Greater
     }
+}
+
+/// What makes one setting better than another.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Compare {
+    /// Chances, then margins, then nearness to the typical values.
+    Everything,
+    /// Chances alone.
+    Chances,
 }
 
 /// All columns of one block, so that only what depends on a changed number is computed again.
@@ -275,16 +285,15 @@ impl<'a> Search<'a> {
                     continue;
                 }
                 let trials = self.trials(one, other);
-                changes += u32::from(self.try_all(&trials, &mut best));
-                let standing = changes;
-                if one != other {
-                    for stride in STRIDES {
+                changes += u32::from(self.try_all(&trials, &mut best, Compare::Everything));
+                for stride in STRIDES {
+                    let all_hold = best.chances.1 as usize == BLOCK;
+                    if one != other && !all_hold {
                         let trials = self.slants(one, other, stride);
-                        changes += u32::from(self.try_all(&trials, &mut best));
+                        changes += u32::from(self.try_all(&trials, &mut best, Compare::Chances));
                     }
                 }
-                // From where a slanting step has led, another may lead further.
-                tried.insert((one, other), standing);
+                tried.insert((one, other), changes);
             }
             if changes == before {
                 break;
@@ -296,8 +305,8 @@ impl<'a> Search<'a> {
     fn trials(&self, one: usize, other: usize) -> Vec<Vec<(usize, f64)>> {
         let (a, b) = (self.case.free[one].range, self.case.free[other].range);
         if one == other {
-            let last = f64::from(POINTS - 1);
-            return (0..POINTS).map(|point| vec![(one, value_at(&a, f64::from(point) / last))]).collect();
+            let place = |point: u32| f64::from(point) / f64::from(POINTS - 1);
+            return (0..POINTS).map(|point| vec![(one, value_at(&a, place(point)))]).collect();
         }
         let ends = [(a.low, b.low), (a.low, b.high), (a.high, b.low), (a.high, b.high)];
         ends.iter().map(|(a, b)| vec![(one, *a), (other, *b)]).collect()
@@ -338,7 +347,7 @@ impl<'a> Search<'a> {
     }
 
     /// Tries settings of the same numbers and leaves the best of them, or what stood before.
-    fn try_all(&mut self, trials: &[Vec<(usize, f64)>], best: &mut Score) -> bool {
+    fn try_all(&mut self, trials: &[Vec<(usize, f64)>], best: &mut Score, compare: Compare) -> bool {
         let Some(first) = trials.first() else { return false };
         let mut keep: Vec<(usize, f64)> =
             first.iter().map(|(free, _)| (*free, self.case.free[*free].value)).collect();
@@ -349,7 +358,8 @@ impl<'a> Search<'a> {
             }
             self.set(trial);
             // Medians are compared only between settings that hold equally often.
-            if self.chances() < best.chances {
+            let ordering = self.chances().cmp(&best.chances);
+            if ordering == Ordering::Less || (ordering == Ordering::Equal && compare == Compare::Chances) {
                 continue;
             }
             let score = self.score();

@@ -250,6 +250,9 @@ impl Reader<'_> {
         let Some(entries) = node.map(section, &expected, self.problems) else { return };
         let known = &self.catalog.quantities;
         for (key, value) in entries {
+            if self.problems.is_full() {
+                return;
+            }
             let Some(name) = key.text("a quantity", self.problems) else { continue };
             if of == Of::Environment && name == "habitat" {
                 continue;

@@ -20,6 +20,9 @@ impl Reader<'_> {
             .flat_map(|entry| entry.parameters.keys().map(|name| format!("{}.{name}", entry.id)))
             .collect();
         for (key, value) in entries {
+            if self.problems.is_full() {
+                return adopted;
+            }
             let Some(full) = key.text("a parameter", self.problems) else { continue };
             let found = full.split_once('.').and_then(|(id, name)| {
                 let entry = self.catalog.entries().find(|entry| entry.id == id)?;

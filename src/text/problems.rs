@@ -30,7 +30,7 @@ pub struct Problem {
     pub nearest: Option<String>,
 }
 
-/// All problems of a phase, in the order found. Beyond the first 10,000 they are only counted, so that a hostile file cannot
+/// All problems of a phase, in the order found. Beyond the first 1,000 they are only counted, so that a hostile file cannot
 /// fill the memory.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub struct Problems {
@@ -39,7 +39,7 @@ pub struct Problems {
 }
 
 /// How many problems are kept.
-const KEPT: usize = 10_000;
+const KEPT: usize = 1_000;
 
 impl Fault {
     /// A fault at these bytes of a short text.

@@ -250,7 +250,10 @@ impl Reader<'_, '_> {
         let weights_node = fields.take("weights");
         let values_node = fields.require("values", self.problems)?;
         let nodes = values_node.list("`values`", false, self.problems)?;
-        let values: Vec<Option<One>> = nodes.iter().map(|node| self.stated(node, "a value")).collect();
+        let values: Vec<Option<One>> = nodes
+            .iter()
+            .map(|node| if self.problems.is_full() { None } else { self.stated(node, "a value") })
+            .collect();
         let weights = match weights_node {
             None => vec![Some(1.0); values.len()],
             Some(node) => {

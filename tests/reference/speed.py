@@ -52,11 +52,11 @@ class Writer(ast.NodeTransformer):
             return ast.Call(ast.Name("np.where"), arguments, [])
         if name in self.entry.curves:
             form = self.entry.node["curves"][name]
-            if form["between"] != "straight" or form["axes"] != "linear-log":
-                raise NotImplementedError(name)
-            at, gives = ([catalogue.exact(x) for x in form[key]] for key in ("at", "gives"))
-            points = [ast.Constant(at), ast.Constant(np.log(gives).tolist())]
-            return ast.Call(ast.Name("np.exp"), [ast.Call(ast.Name("np.interp"), [*arguments, *points], [])], [])
+            if form["between"] != "straight" or form["axes"] != "reciprocal-log":
+                raise NotImplementedError(f"{name}: {form['between']} curves on axes {form['axes']}")
+            at, gives = (np.array([catalogue.exact(x) for x in form[key]]) for key in ("at", "gives"))
+            points = f"{(-1 / at).tolist()}, {np.log(gives).tolist()}"
+            return ast.parse(f"np.exp(np.interp(-1 / ({ast.unparse(arguments[0])}), {points}))", mode="eval").body
         return ast.Call(ast.Name(f"np.{NAMES.get(name, name)}"), arguments, [])
 
     def visit_BinOp(self, node):

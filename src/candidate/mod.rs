@@ -1,15 +1,15 @@
 //! What is claimed about one organism: attributes and stated quantities, read from a document.
 
 mod read;
+mod references;
 
 use std::collections::{BTreeMap, BTreeSet};
 
 pub use read::read_file;
 
-use crate::catalog::Correlation;
+use crate::catalog::Correlations;
 use crate::quantity::Unit;
 use crate::quantity::written::Reading;
-use crate::text::Place;
 
 /// A parameter of an entry that the candidate replaces.
 #[derive(Clone, Debug)]
@@ -44,7 +44,7 @@ pub struct Candidate {
     /// Parameters it replaces, by `entry.parameter`.
     pub adopted: BTreeMap<String, Adopted>,
     /// Correlations between stated quantities.
-    pub correlations: Vec<(Correlation, Place)>,
+    pub correlations: Correlations,
     /// Free text.
     pub notes: Option<String>,
     /// Warnings that reading gave: code and message.

@@ -4,14 +4,16 @@ use std::collections::{BTreeMap, BTreeSet};
 use std::path::Path;
 use std::sync::Arc;
 
-use super::{Adopted, Candidate};
-use crate::catalog::{Catalog, Of, read_correlations};
-use crate::quantity::Distribution;
-use crate::quantity::written::{self, Reading, Value, Wanted};
-use crate::text::{Fields, Kind, Node, Problem, Problems, Source, nearest, yaml};
+use super::Candidate;
+use crate::catalog::{Attribute, Catalog, Of};
+use crate::quantity::written::{self, Reading, Wanted};
+use crate::text::{Fields, Kind, Node, Problem, Problems, Source, nearest, shortened, yaml};
 
 /// The version of the candidate format.
 const FORMAT: &str = "1";
+
+/// Attributes as they are written.
+const EXAMPLE: &str = "{ body_plan: prokaryotic-cell, form: sphere }";
 
 /// Share of a stated distribution that bounds may cut off without a word.
 const CUT_UNMENTIONED: f64 = 0.01;
@@ -25,52 +27,49 @@ pub fn read_file(
     problems: &mut Problems,
 ) -> Vec<Candidate> {
     let mut candidates = Vec::new();
-    for (document, node) in yaml::documents(source, problems) {
-        let mut found = Problems::new();
-        let candidate = Reader { catalog, folder, problems: &mut found }.candidate(&node);
-        if let (Some(mut candidate), true) = (candidate, found.is_empty()) {
+    yaml::each_document(source, problems, |document, node, problems| {
+        let before = problems.len();
+        let candidate = Reader { catalog, folder, problems }.candidate(&node);
+        if let (Some(mut candidate), true) = (candidate, problems.len() == before) {
             candidate.file.clone_from(&source.name);
             candidate.document = document;
             candidates.push(candidate);
         }
-        problems.append(found);
-    }
+    });
     candidates
 }
 
-struct Reader<'a> {
-    catalog: &'a Catalog,
-    folder: Option<&'a Path>,
-    problems: &'a mut Problems,
+/// Reads one document.
+pub(super) struct Reader<'a> {
+    pub(super) catalog: &'a Catalog,
+    pub(super) folder: Option<&'a Path>,
+    pub(super) problems: &'a mut Problems,
 }
 
 impl Reader<'_> {
     fn candidate(&mut self, node: &Node) -> Option<Candidate> {
+        node.map(
+            "the document",
+            "a candidate: a map with `hypobiont: 1`, `name` and `attributes`; `hypobiont new` drafts one",
+            self.problems,
+        )?;
         let mut fields = Fields::of(node, "a candidate", self.problems)?;
-        if let Some(version) = fields.require("hypobiont", self.problems) {
-            let text = version.text("`hypobiont`", self.problems).unwrap_or_default();
-            if text != FORMAT {
-                self.problems.push(
-                    Problem::at(version.place(), format!("format version `{text}` is not known"))
-                        .expected(format!("`hypobiont: {FORMAT}`")),
-                );
-            }
+        let version = format!("`hypobiont: {FORMAT}`");
+        if let Some(node) = fields.require_like("hypobiont", &version, self.problems) {
+            self.version(node, &version);
         }
-        let name = fields.require("name", self.problems).and_then(|node| {
-            let text = node.text("the name", self.problems)?;
-            if text.trim().is_empty() {
-                self.problems.push(Problem::at(node.place(), "the name is empty"));
-            }
-            Some(text.to_owned())
-        });
-        let attributes_node = fields.require("attributes", self.problems);
+        let name = fields
+            .require_like("name", "`name: ...`, which stands in the reports", self.problems)
+            .and_then(|node| self.name(node));
+        let attributes_node =
+            fields.require_like("attributes", &format!("`attributes: {EXAMPLE}`"), self.problems);
         let organism = fields.take("organism");
         let environment = fields.take("environment");
         let adopt = fields.take("adopt");
         let correlations = fields.take("correlations");
         let notes =
-            fields.take("notes").and_then(|node| node.text("the notes", self.problems)).map(str::to_owned);
-        fields.finish(self.problems);
+            fields.take("notes").and_then(|node| node.text("`notes`", self.problems)).map(str::to_owned);
+        fields.finish_or(|key| section_of(key, self.catalog), self.problems);
 
         let attributes = attributes_node.map(|node| self.attributes(node)).unwrap_or_default();
         let stated_attributes = match attributes_node.map(|node| &node.kind) {
@@ -119,6 +118,24 @@ impl Reader<'_> {
         })
     }
 
+    fn version(&mut self, node: &Node, expected: &str) {
+        let message = match &node.kind {
+            Kind::Scalar(scalar) if scalar.text == FORMAT => return,
+            Kind::Scalar(scalar) => format!("format version `{}` is not known", shortened(&scalar.text, 60)),
+            _ => node.instead("`hypobiont`"),
+        };
+        self.problems.push(Problem::at(node.place(), message).expected(expected));
+    }
+
+    fn name(&mut self, node: &Node) -> Option<String> {
+        let text = node.text("`name`", self.problems)?;
+        if text.trim().is_empty() {
+            self.problems
+                .push(Problem::at(node.place(), "the name is empty").expected("a name for the reports"));
+        }
+        Some(text.to_owned())
+    }
+
     fn attributes(&mut self, node: &Node) -> BTreeMap<String, String> {
         let mut read: BTreeMap<String, String> = self
             .catalog
@@ -126,39 +143,18 @@ impl Reader<'_> {
             .iter()
             .filter_map(|(name, attribute)| Some((name.clone(), attribute.default.clone()?)))
             .collect();
-        let Kind::Map(entries) = &node.kind else {
-            self.problems.push(
-                Problem::at(node.place(), format!("the attributes are {}", node.describe()))
-                    .expected("a map such as `{ body_plan: prokaryotic-cell, form: sphere }`"),
-            );
-            return read;
-        };
+        let expected = format!("a map such as `{EXAMPLE}`");
+        let Some(entries) = node.map("`attributes`", &expected, self.problems) else { return read };
         let known = &self.catalog.attributes;
         for (key, value) in entries {
             let Some(name) = key.text("an attribute", self.problems) else { continue };
             let Some(attribute) = known.get(name) else {
-                let message = if self.catalog.quantities.contains_key(name) {
-                    format!("`{name}` is a quantity, not an attribute")
-                } else {
-                    format!("`{name}` is not an attribute")
-                };
-                self.problems.push(
-                    Problem::at(key.place(), message)
-                        .expected(format!("one of {}", joined(known.keys())))
-                        .nearest(nearest(name, known.keys().map(String::as_str))),
-                );
+                self.no_attribute(key, name);
                 continue;
             };
-            let Some(word) = value.text("a word", self.problems) else { continue };
-            if !attribute.words.contains_key(word) {
-                self.problems.push(
-                    Problem::at(value.place(), format!("`{word}` is not a word of `{name}`"))
-                        .expected(format!("one of {}", joined(attribute.words.keys())))
-                        .nearest(nearest(word, attribute.words.keys().map(String::as_str))),
-                );
-                continue;
+            if let Some(word) = self.word(name, attribute, value) {
+                read.insert(name.to_owned(), word);
             }
-            read.insert(name.to_owned(), word.to_owned());
         }
         if let Some(body_plan) = known.get("body_plan")
             && !read.contains_key("body_plan")
@@ -174,21 +170,56 @@ impl Reader<'_> {
         read
     }
 
+    fn no_attribute(&mut self, key: &Node, name: &str) {
+        let known = &self.catalog.attributes;
+        let problem = match self.catalog.quantities.get(name) {
+            Some(quantity) => {
+                let section = if quantity.of == Of::Organism { "organism" } else { "environment" };
+                Problem::at(key.place(), format!("`{name}` is a quantity, not an attribute"))
+                    .expected(format!("`{name}` under `{section}`"))
+            }
+            None => Problem::at(key.place(), format!("`{}` is not an attribute", shortened(name, 60)))
+                .expected(format!("one of {}", joined(known.keys())))
+                .nearest(nearest(name, known.keys().map(String::as_str))),
+        };
+        self.problems.push(problem);
+    }
+
+    fn word(&mut self, name: &str, attribute: &Attribute, value: &Node) -> Option<String> {
+        let message = match &value.kind {
+            Kind::Scalar(scalar) if attribute.words.contains_key(&scalar.text) => {
+                return Some(scalar.text.clone());
+            }
+            Kind::Scalar(scalar) => format!("`{}` is not a word of `{name}`", shortened(&scalar.text, 60)),
+            _ => value.instead(&format!("`{name}`")),
+        };
+        let words = attribute.words.keys().map(String::as_str);
+        let near = match &value.kind {
+            Kind::Scalar(scalar) => nearest(&scalar.text, words),
+            _ => None,
+        };
+        let expected = format!("one of {}", joined(attribute.words.keys()));
+        self.problems.push(Problem::at(value.place(), message).expected(expected).nearest(near));
+        None
+    }
+
     fn habitat(&mut self, node: &Node) -> Option<String> {
         let Kind::Map(entries) = &node.kind else { return None };
         let (_, value) = entries
             .iter()
             .find(|(key, _)| matches!(&key.kind, Kind::Scalar(scalar) if scalar.text == "habitat"))?;
-        let name = value.text("the habitat", self.problems)?;
-        if !self.catalog.habitats.contains_key(name) {
-            self.problems.push(
-                Problem::at(value.place(), format!("`{name}` is not a habitat"))
-                    .expected(format!("one of {}", joined(self.catalog.habitats.keys())))
-                    .nearest(nearest(name, self.catalog.habitats.keys().map(String::as_str))),
-            );
-            return None;
-        }
-        Some(name.to_owned())
+        let known = &self.catalog.habitats;
+        let (message, near) = match &value.kind {
+            Kind::Scalar(scalar) if known.contains_key(&scalar.text) => return Some(scalar.text.clone()),
+            Kind::Scalar(scalar) => (
+                format!("`{}` is not a habitat", shortened(&scalar.text, 60)),
+                nearest(&scalar.text, known.keys().map(String::as_str)),
+            ),
+            _ => (value.instead("`habitat`"), None),
+        };
+        let expected = "a name that `hypobiont catalog list habitats` shows; quantities stand beside it under `environment`";
+        self.problems.push(Problem::at(value.place(), message).expected(expected).nearest(near));
+        None
     }
 
     fn quantities(
@@ -198,16 +229,25 @@ impl Reader<'_> {
         given: &mut BTreeMap<String, Reading>,
         warnings: &mut Vec<(&'static str, String)>,
     ) {
-        let section = if of == Of::Organism { "organism" } else { "environment" };
-        let Kind::Map(entries) = &node.kind else {
-            if !matches!(node.kind, Kind::Null) {
-                self.problems.push(
-                    Problem::at(node.place(), format!("`{section}` is {}", node.describe()))
-                        .expected("a map from quantity to value, such as `diameter: 210 ± 30 nm`"),
-                );
-            }
+        // A section without entries says nothing, as in a fresh draft.
+        if matches!(node.kind, Kind::Null) {
             return;
+        }
+        let (section, example) = match of {
+            Of::Organism => ("`organism`", "diameter: 210 ± 30 nm"),
+            Of::Environment => ("`environment`", "temperature: 55 ± 10 °C"),
         };
+        let habitat = match &node.kind {
+            Kind::Scalar(scalar) if of == Of::Environment => {
+                self.catalog.habitats.get_key_value(&scalar.text)
+            }
+            _ => None,
+        };
+        let expected = match habitat {
+            Some((name, _)) => format!("`environment: {{ habitat: {name} }}`"),
+            None => format!("a map from quantity to value, such as `{example}`"),
+        };
+        let Some(entries) = node.map(section, &expected, self.problems) else { return };
         let known = &self.catalog.quantities;
         for (key, value) in entries {
             let Some(name) = key.text("a quantity", self.problems) else { continue };
@@ -215,14 +255,7 @@ impl Reader<'_> {
                 continue;
             }
             let Some(quantity) = known.get(name) else {
-                let fitting = known.values().filter(|q| q.of == of).map(|q| q.name.as_str());
-                let mut problem = Problem::at(key.place(), format!("`{name}` is not a quantity")).nearest(
-                    nearest(name, fitting).or_else(|| nearest(name, known.keys().map(String::as_str))),
-                );
-                if self.catalog.attributes.contains_key(name) {
-                    problem = problem.expected(format!("`{name}` under `attributes`"));
-                }
-                self.problems.push(problem);
+                self.no_quantity(key, name, of);
                 continue;
             };
             if quantity.of != of {
@@ -256,83 +289,40 @@ impl Reader<'_> {
         }
     }
 
-    fn adopted(&mut self, node: &Node) -> BTreeMap<String, Adopted> {
-        let mut adopted = BTreeMap::new();
-        let Kind::Map(entries) = &node.kind else {
-            self.problems.push(
-                Problem::at(node.place(), format!("`adopt` is {}", node.describe()))
-                    .expected("a map from `entry.parameter` to a value"),
-            );
-            return adopted;
+    fn no_quantity(&mut self, key: &Node, name: &str, of: Of) {
+        let written = shortened(name, 60);
+        let problem = if name.starts_with(|c: char| c.is_ascii_digit()) {
+            // `{ diameter: 0,21 µm }` ends an entry at its comma.
+            let message = format!("`{written}` stands where the name of a quantity was expected");
+            Problem::at(key.place(), message)
+                .expected("a point in place of a decimal comma: inside brackets a comma ends an entry")
+        } else if self.catalog.attributes.contains_key(name) {
+            Problem::at(key.place(), format!("`{name}` is an attribute, not a quantity"))
+                .expected(format!("`{name}` under `attributes`"))
+        } else {
+            let known = &self.catalog.quantities;
+            let fitting = known.values().filter(|quantity| quantity.of == of).map(|q| q.name.as_str());
+            Problem::at(key.place(), format!("`{written}` is not a quantity"))
+                .expected("a name that `hypobiont catalog list quantities` shows")
+                .nearest(nearest(name, fitting).or_else(|| nearest(name, known.keys().map(String::as_str))))
         };
-        for (key, value) in entries {
-            let Some(full) = key.text("a parameter", self.problems) else { continue };
-            let all: BTreeSet<String> = self
-                .catalog
-                .entries()
-                .flat_map(|entry| entry.parameters.keys().map(|name| format!("{}.{name}", entry.id)))
-                .collect();
-            let found = full.split_once('.').and_then(|(id, name)| {
-                let entry = self.catalog.entries().find(|entry| entry.id == id)?;
-                Some((entry, name, entry.parameters.get(name)?))
-            });
-            let Some((entry, name, parameter)) = found else {
-                self.problems.push(
-                    Problem::at(key.place(), format!("`{full}` is not a parameter of an entry"))
-                        .expected("`entry.parameter`; `catalog show ENTRY` lists an entry's parameters")
-                        .nearest(nearest(full, all.iter().map(String::as_str))),
-                );
-                continue;
-            };
-            let wanted = Wanted {
-                name: full,
-                dimension: parameter.unit.dimension(),
-                bounds: crate::quantity::Bounds::NONE,
-                unit: &parameter.unit,
-                may_be_free: false,
-                folder: self.folder,
-            };
-            if let Some(reading) = written::read(value, &wanted, self.problems) {
-                adopted.insert(
-                    full.to_owned(),
-                    Adopted { entry: entry.id.clone(), parameter: name.to_owned(), reading },
-                );
-            }
-        }
-        adopted
+        self.problems.push(problem);
     }
+}
 
-    fn correlations(
-        &mut self,
-        node: &Node,
-        given: &BTreeMap<String, Reading>,
-    ) -> Vec<(crate::catalog::Correlation, crate::text::Place)> {
-        let mut kept = Vec::new();
-        let mut pairs = BTreeSet::new();
-        for correlation in read_correlations(node, self.problems) {
-            for name in &correlation.between {
-                let message = match given.get(name).map(|reading| &reading.value) {
-                    None => format!("`{name}` is correlated but not stated by this candidate"),
-                    Some(Value::Free(_)) => format!("`{name}` is free and cannot be correlated"),
-                    Some(Value::Unknown(Distribution::Exact(_))) => {
-                        format!("`{name}` is exact and cannot be correlated")
-                    }
-                    Some(Value::Unknown(_)) => continue,
-                };
-                self.problems.push(
-                    Problem::at(node.place(), message)
-                        .expected("two uncertain quantities that this candidate states"),
-                );
-            }
-            if !pairs.insert(correlation.between.clone()) {
-                let [a, b] = &correlation.between;
-                self.problems
-                    .push(Problem::at(node.place(), format!("`{a}` and `{b}` are correlated twice")));
-            }
-            kept.push((correlation, node.place()));
+/// Where something belongs that stands at the top of a candidate.
+fn section_of(key: &str, catalog: &Catalog) -> Option<String> {
+    let section = if key == "habitat" {
+        "environment"
+    } else if catalog.attributes.contains_key(key) {
+        "attributes"
+    } else {
+        match catalog.quantities.get(key)?.of {
+            Of::Organism => "organism",
+            Of::Environment => "environment",
         }
-        kept
-    }
+    };
+    Some(format!("`{key}` under `{section}`, indented deeper than it"))
 }
 
 fn joined<'a>(names: impl Iterator<Item = &'a String>) -> String {

@@ -3,10 +3,8 @@
 use std::collections::{BTreeMap, BTreeSet};
 
 use super::Catalog;
-use super::entry::{Entry, RelationKind, coefficient};
+use super::entry::{Entry, RelationKind};
 use crate::formula::{Binary, Expr, ExprKind, Formula};
-use crate::math::factor::cholesky;
-use crate::quantity::Distribution;
 use crate::text::{Problem, Problems};
 
 /// Adds everything at odds in the catalogue as a whole.
@@ -27,19 +25,30 @@ pub(super) fn check(catalog: &Catalog, problems: &mut Problems) {
 
 /// One id, one entry, whatever its class: reports and streams are named by it.
 fn ids(catalog: &Catalog, problems: &mut Problems) {
-    let mut seen = BTreeSet::new();
+    let mut seen: BTreeMap<&str, &Entry> = BTreeMap::new();
     for entry in catalog.entries() {
-        if !seen.insert(entry.id.as_str()) {
-            problems.push(Problem::at(entry.place.clone(), format!("the id `{}` stands twice", entry.id)));
+        if let Some(other) = seen.insert(entry.id.as_str(), entry) {
+            problems.push(
+                Problem::at(
+                    later(entry, other).place.clone(),
+                    format!("the id `{}` stands for two entries of different kinds", entry.id),
+                )
+                .expected("an id of its own for each entry"),
+            );
         }
     }
 }
 
+/// Of two entries at odds the one to point at: that of an overlay, else the second.
+const fn later<'a>(second: &'a Entry, first: &'a Entry) -> &'a Entry {
+    if first.overlaid && !second.overlaid { first } else { second }
+}
+
 fn relations(catalog: &Catalog, problems: &mut Problems) {
     let words = catalog.words();
-    let mut by_quantity: BTreeMap<&str, Vec<&super::entry::Relation>> = BTreeMap::new();
+    let mut by_rank: BTreeMap<(&str, u32), Vec<&super::entry::Relation>> = BTreeMap::new();
     for relation in &catalog.relations {
-        by_quantity.entry(&relation.gives).or_default().push(relation);
+        by_rank.entry((&relation.gives, relation.rank)).or_default().push(relation);
         let default = catalog.quantities.get(&relation.gives).and_then(|quantity| quantity.default.as_ref());
         if relation.kind == RelationKind::Law && default.is_some_and(super::entry::Default::is_free) {
             problems.push(
@@ -54,33 +63,36 @@ fn relations(catalog: &Catalog, problems: &mut Problems) {
             );
         }
         if relation.formula.names().contains(&relation.gives.as_str()) {
-            problems.push(Problem::at(
-                relation.entry.place.clone(),
-                format!("the relation `{}` gives `{}` from itself", relation.entry.id, relation.gives),
-            ));
+            problems.push(
+                Problem::at(
+                    relation.entry.place.clone(),
+                    format!("the relation `{}` gives `{}` from itself", relation.entry.id, relation.gives),
+                )
+                .expected("a formula without the quantity that it gives"),
+            );
         }
     }
-    for (quantity, relations) in by_quantity {
-        for (position, one) in relations.iter().enumerate() {
-            for other in &relations[position + 1..] {
-                if one.rank == other.rank && one.entry.condition.overlaps(&other.entry.condition, &words) {
-                    problems.push(
-                        Problem::at(
-                            other.entry.place.clone(),
-                            format!(
-                                "`{}` and `{}` both give `{quantity}` and can both match",
-                                one.entry.id, other.entry.id
-                            ),
-                        )
-                        .expected("different ranks, or conditions that exclude each other"),
-                    );
-                }
-            }
+    for ((quantity, _), relations) in by_rank {
+        for (position, relation) in relations.iter().enumerate() {
+            let mut earlier = relations[..position].iter();
+            let clash =
+                earlier.find(|other| other.entry.condition.overlaps(&relation.entry.condition, &words));
+            let Some(other) = clash else { continue };
+            problems.push(
+                Problem::at(
+                    later(&relation.entry, &other.entry).place.clone(),
+                    format!(
+                        "`{}` and `{}` both give `{quantity}` and can both match",
+                        other.entry.id, relation.entry.id
+                    ),
+                )
+                .expected("different ranks, or conditions that exclude each other"),
+            );
         }
     }
 }
 
-/// Every parameter, joint value and curve of an entry is used by its formulas, and correlations name parameters.
+/// Every parameter, joint value and curve of an entry is used by its formulas.
 fn names(entry: &Entry, formulas: &[&Formula], problems: &mut Problems) {
     let mut used = BTreeSet::new();
     for formula in formulas {
@@ -89,44 +101,12 @@ fn names(entry: &Entry, formulas: &[&Formula], problems: &mut Problems) {
     let joint = entry.joint.iter().flat_map(|joint| joint.values.keys());
     for name in entry.parameters.keys().chain(joint).chain(entry.curves.keys()) {
         if !used.contains(name) {
-            problems
-                .push(Problem::at(entry.place.clone(), format!("`{name}` of `{}` is not used", entry.id)));
+            let place = entry.places.get(name).unwrap_or(&entry.place).clone();
+            problems.push(
+                Problem::at(place, format!("`{name}` of `{}` is not used", entry.id))
+                    .expected("only numbers that a formula of the entry uses"),
+            );
         }
-    }
-    correlations(entry, problems);
-    for correlation in &entry.correlations {
-        for name in &correlation.between {
-            let uncertain = entry.parameters.get(name).is_some_and(is_uncertain);
-            if !uncertain {
-                problems.push(Problem::at(
-                    entry.place.clone(),
-                    format!(
-                        "the correlation of `{}` names `{name}`, which is no uncertain parameter of it",
-                        entry.id
-                    ),
-                ));
-            }
-        }
-    }
-}
-
-/// The coefficients of an entry can hold together.
-fn correlations(entry: &Entry, problems: &mut Problems) {
-    let names: BTreeSet<&str> = entry
-        .correlations
-        .iter()
-        .flat_map(|correlation| correlation.between.iter().map(String::as_str))
-        .collect();
-    let names: Vec<&str> = names.into_iter().collect();
-    let between = |i: usize, j: usize| coefficient(&entry.correlations, names[i], names[j]);
-    if cholesky(names.len(), between).is_none() {
-        problems.push(
-            Problem::at(
-                entry.place.clone(),
-                format!("the correlations of `{}` contradict each other", entry.id),
-            )
-            .expected("coefficients that can hold together: their matrix must be positive definite"),
-        );
     }
 }
 
@@ -139,31 +119,27 @@ fn collect_names(expr: &Expr, used: &mut BTreeSet<String>) {
     }
 }
 
-fn is_uncertain(parameter: &super::entry::Parameter) -> bool {
-    parameter.value.values().into_iter().any(|value| !matches!(value, Distribution::Exact(_)))
-}
-
 /// A regression `level * (x / 1 [unit])^slope` with both uncertain needs its correlation, or a centred form in which
 /// slope and level are independent.
 fn uncentred(entry: &Entry, formula: &Formula, problems: &mut Problems) {
     let uncertain: BTreeSet<&str> = entry
         .parameters
         .iter()
-        .filter(|(_, parameter)| is_uncertain(parameter))
+        .filter(|(_, parameter)| parameter.is_uncertain())
         .map(|(name, _)| name.as_str())
         .collect();
     let mut slopes = Vec::new();
     collect_uncentred(formula.root(), &mut slopes);
     for slope in slopes.into_iter().filter(|slope| uncertain.contains(slope.as_str())) {
         let correlated = |level: &str| {
-            entry.correlations.iter().any(|correlation| {
+            entry.correlations.pairs().iter().any(|correlation| {
                 correlation.between.contains(&slope) && correlation.between.iter().any(|name| name == level)
             })
         };
         for level in uncertain.iter().filter(|level| **level != slope && !correlated(level)) {
             problems.push(
                 Problem::at(
-                    entry.place.clone(),
+                    entry.places.get(&slope).unwrap_or(&entry.place).clone(),
                     format!("`{}` has an uncertain slope `{slope}` and level `{level}` that are not centred", entry.id),
                 )
                 .expected(

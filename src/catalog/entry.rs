@@ -5,6 +5,7 @@ use std::sync::Arc;
 
 use super::basis::{Basis, Standing};
 use super::condition::Condition;
+use super::correlations::Correlations;
 use crate::formula::Formula;
 use crate::formula::curves::Curve;
 use crate::quantity::written::Value;
@@ -166,6 +167,14 @@ pub struct Parameter {
     pub provenance: Provenance,
 }
 
+impl Parameter {
+    /// Whether it is more than one exact value.
+    #[must_use]
+    pub fn is_uncertain(&self) -> bool {
+        self.value.values().into_iter().any(|value| !matches!(value, Distribution::Exact(_)))
+    }
+}
+
 /// Parameters that come together: one set is taken per draw.
 #[derive(Clone, Debug, Default)]
 pub struct Joint {
@@ -175,25 +184,6 @@ pub struct Joint {
     pub units: BTreeMap<String, Unit>,
     /// Cumulated weights of the sets; the last is 1.
     pub cumulated: Vec<f64>,
-}
-
-/// Correlation of normal scores between two names.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Correlation {
-    /// The names, in alphabetical order.
-    pub between: [String; 2],
-    /// Strictly inside (-1, 1).
-    pub coefficient: f64,
-}
-
-/// The coefficient between two different names: 0 where none is stated.
-#[must_use]
-pub fn coefficient(correlations: &[Correlation], a: &str, b: &str) -> f64 {
-    let pair = if a < b { [a, b] } else { [b, a] };
-    correlations
-        .iter()
-        .find(|correlation| correlation.between == pair)
-        .map_or(0.0, |correlation| correlation.coefficient)
 }
 
 /// What relations, constraints and figures have in common.
@@ -214,7 +204,7 @@ pub struct Entry {
     /// Its numbers that come in sets.
     pub joint: Option<Joint>,
     /// Between its parameters.
-    pub correlations: Vec<Correlation>,
+    pub correlations: Correlations,
     /// Its interpolating functions.
     pub curves: BTreeMap<String, Arc<Curve>>,
     /// Quantity to the range (SI) that the entry was drawn from.
@@ -227,6 +217,8 @@ pub struct Entry {
     pub exceptions: Option<String>,
     /// Where it stands.
     pub place: Place,
+    /// Where its own names stand: parameters, joint values, curves.
+    pub places: BTreeMap<String, Place>,
     /// Whether it came from an overlay.
     pub overlaid: bool,
 }

@@ -6,7 +6,7 @@ use std::sync::Arc;
 use include_dir::{Dir, include_dir};
 use sha2::{Digest, Sha256};
 
-use crate::text::{Problem, Problems, Source};
+use crate::text::{Problem, Problems, Source, neighbour};
 
 static EMBEDDED: Dir<'_> = include_dir!("$CARGO_MANIFEST_DIR/catalogs");
 
@@ -96,13 +96,19 @@ pub(super) fn overlay(folder: &Path, problems: &mut Problems) -> Vec<File> {
     if folder.is_dir() {
         collect_overlay(folder, "", &mut found, problems);
     } else {
-        problems.push(Problem::whole(format!("overlay `{}` is not a folder", folder.display())).expected(
-            "a folder with the shape of a catalogue: quantities.yaml, relations/, constraints/, ...",
-        ));
+        let name = folder.display().to_string();
+        let state = if folder.exists() { "is not a folder" } else { "does not exist" };
+        problems.push(
+            Problem::whole(format!("the overlay `{name}` {state}"))
+                .expected(
+                    "a folder with the shape of a catalogue: quantities.yaml, relations/, constraints/, ...",
+                )
+                .nearest(neighbour(folder, &name)),
+        );
     }
     if found.is_empty() && problems.is_empty() {
         problems.push(
-            Problem::whole(format!("overlay `{}` holds no catalogue files", folder.display()))
+            Problem::whole(format!("the overlay `{}` holds no files of a catalogue", folder.display()))
                 .expected("quantities.yaml, sources.yaml, relations/*.yaml, constraints/*.yaml, ..."),
         );
     }
@@ -133,7 +139,8 @@ fn collect_overlay(root: &Path, below: &str, found: &mut Vec<File>, problems: &m
     let entries = match std::fs::read_dir(&folder) {
         Ok(entries) => entries,
         Err(error) => {
-            problems.push(Problem::whole(format!("cannot read the folder `{}`: {error}", folder.display())));
+            let message = format!("the folder `{}` cannot be read: {}", folder.display(), error.kind());
+            problems.push(Problem::whole(message));
             return;
         }
     };
@@ -147,9 +154,19 @@ fn collect_overlay(root: &Path, below: &str, found: &mut Vec<File>, problems: &m
         let path = if below.is_empty() { name.clone() } else { format!("{below}/{name}") };
         let full = root.join(&path);
         if full.is_dir() {
-            if below.is_empty() && !BESIDE.contains(&name.as_str()) {
+            if !below.is_empty() {
+                problems.push(
+                    Problem::whole(format!("the folder `{}` stands too deep", full.display()))
+                        .expected(format!("its files straight in `{}`", folder.display())),
+                );
+            } else if !BESIDE.contains(&name.as_str()) {
                 collect_overlay(root, &path, found, problems);
             }
+        } else if name.ends_with(".yml") {
+            problems.push(
+                Problem::whole(format!("`{}` does not end in `.yaml`", full.display()))
+                    .expected(format!("`{}aml`", full.display().to_string().trim_end_matches("ml"))),
+            );
         } else if name.ends_with(".yaml") {
             match Holds::of(&path) {
                 Some(holds) => match Source::from_file(&full) {

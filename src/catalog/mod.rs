@@ -6,9 +6,12 @@
 mod basis;
 mod check;
 mod condition;
+mod correlations;
 mod entry;
 mod files;
 mod read_entries;
+mod read_numbers;
+mod read_quantities;
 mod read_tables;
 
 use std::collections::{BTreeMap, BTreeSet};
@@ -16,11 +19,12 @@ use std::path::PathBuf;
 
 pub use basis::{Basis, Standing};
 pub use condition::{Clause, Condition, Match};
-pub(crate) use read_entries::correlations as read_correlations;
+pub(crate) use correlations::{Correlated, read as read_correlations};
+pub use correlations::{Correlation, Correlations};
 
 pub use entry::{
-    Attribute, ByAttribute, Constant, Constraint, Correlation, Default, Entry, Figure, Habitat, Joint, Of,
-    Parameter, Provenance, Quantity, Relation, RelationKind, Side, Words, Work, coefficient,
+    Attribute, ByAttribute, Constant, Constraint, Default, Entry, Figure, Habitat, Joint, Of, Parameter,
+    Provenance, Quantity, Relation, RelationKind, Side, Words, Work,
 };
 
 use crate::text::Problems;

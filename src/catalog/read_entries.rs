@@ -1,23 +1,20 @@
 //! The files that are lists of entries: relations, constraints, figures; and the habitats.
 
 use std::collections::{BTreeMap, BTreeSet};
-use std::sync::Arc;
 
+use super::basis::Basis;
 use super::condition::{Clause, Condition};
-use super::entry::{
-    ByAttribute, Constraint, Correlation, Entry, Figure, Habitat, Joint, Of, Parameter, Relation,
-    RelationKind, Side,
-};
+use super::entry::{ByAttribute, Constraint, Entry, Figure, Habitat, Of, Relation, RelationKind, Side};
 use super::files::{File, Holds};
+use super::read_numbers;
 use super::read_tables::{
-    Seen, Tables, any_value, basis, by_attribute, check_name, exact, for_each_key, provenance, sources,
-    text_of, unit, word,
+    ATTRIBUTE, QUANTITY, Seen, Tables, basis, by_attribute, exact, for_each_key, known_word, named,
+    one_of_bases, sources, text_of, unit, word,
 };
-use crate::formula::curves::{Axes, Between, Curve, Form, Outside, Scale};
 use crate::formula::{ExprKind, Formula, Scope};
-use crate::quantity::written::{self, Reading, Value, Wanted};
-use crate::quantity::{Dimension, Distribution, Unit};
-use crate::text::{Fields, Kind, Node, Problem, Problems, nearest, yaml};
+use crate::quantity::written::{self, Reading, Wanted};
+use crate::quantity::{Dimension, Unit};
+use crate::text::{Fields, Kind, Node, Problem, Problems, yaml};
 
 /// All entries, by id.
 #[derive(Debug, Default)]
@@ -36,14 +33,21 @@ pub(super) fn read(files: &[File], tables: &Tables, problems: &mut Problems) -> 
     for file in files {
         match file.holds {
             Holds::Relations | Holds::Constraints | Holds::Figures => {
-                for (_, document) in yaml::documents(&file.source, problems) {
-                    let Some(list) = document.list("the file", false, problems) else { continue };
+                yaml::each_document(&file.source, problems, |_, document, problems| {
+                    let Kind::List(list) = &document.kind else {
+                        let problem = Problem::at(document.place(), document.instead("the file"));
+                        problems.push(problem.expected("a list of entries, each begun by `- id: ...`"));
+                        return;
+                    };
                     for node in list {
+                        if problems.is_full() {
+                            return;
+                        }
                         read_one(node, file, tables, &mut seen, &mut entries, problems);
                     }
-                }
+                });
             }
-            Holds::Habitats => for_each_key(file, &mut seen, problems, |name, node, problems| {
+            Holds::Habitats => for_each_key(file, &mut seen, problems, |name, _, node, problems| {
                 if let Some(habitat) = habitat(node, tables, problems) {
                     if file.overlaid {
                         entries.overlaid.insert(name.to_owned());
@@ -70,33 +74,33 @@ fn read_one(
         Holds::Constraints => "a constraint",
         _ => "a figure",
     };
+    let before = problems.len();
     let Some(mut fields) = Fields::of(node, what, problems) else { return };
-    let Some(entry) = entry(node, &mut fields, file, tables, problems) else { return };
-    let id = entry.id.clone();
-    seen.add(file.holds, &id, file.overlaid, node, problems);
-    let scope = EntryScope { tables, entry: &entry };
-    let read = match file.holds {
-        Holds::Relations => {
-            relation(&mut fields, &scope, problems).map(|(gives, kind, rank, formula, scatter)| {
-                let relation = Relation { gives, kind, rank, formula, scatter, entry: entry.clone() };
-                entries.relations.insert(id.clone(), relation);
-            })
-        }
-        Holds::Constraints => {
-            constraint(node, &mut fields, &scope, problems).map(|(sides, unit, speaks_of)| {
-                let [available, required] = sides;
-                let constraint = Constraint { available, required, unit, speaks_of, entry: entry.clone() };
-                entries.constraints.insert(id.clone(), constraint);
-            })
-        }
-        _ => figure(&mut fields, &scope, problems).map(|(kind, formula, scatter, unit)| {
-            let figure = Figure { kind, formula, scatter, unit, entry: entry.clone() };
-            entries.figures.insert(id.clone(), figure);
-        }),
-    };
+    let Some(id) = id(node, &mut fields, file, seen, problems) else { return };
+    let (entry, broken) = entry(&id, node, &mut fields, file, tables, problems);
+    let scope = EntryScope { tables, entry: &entry, broken: &broken };
+    let mut relations = None;
+    let mut constraints = None;
+    let mut figures = None;
+    match file.holds {
+        Holds::Relations => relations = relation(&mut fields, &scope, problems),
+        Holds::Constraints => constraints = constraint(node, &mut fields, &scope, problems),
+        _ => figures = figure(&mut fields, &scope, problems),
+    }
     fields.finish(problems);
-    if read.is_some() && file.overlaid {
-        entries.overlaid.insert(id);
+    // An entry with a problem is left out, so that it is not also held against the others.
+    if problems.len() > before {
+        return;
+    }
+    if file.overlaid {
+        entries.overlaid.insert(id.clone());
+    }
+    if let Some((gives, kind, rank, formula, scatter)) = relations {
+        entries.relations.insert(id, Relation { gives, kind, rank, formula, scatter, entry });
+    } else if let Some(([available, required], unit, speaks_of)) = constraints {
+        entries.constraints.insert(id, Constraint { available, required, unit, speaks_of, entry });
+    } else if let Some((kind, formula, scatter, unit)) = figures {
+        entries.figures.insert(id, Figure { kind, formula, scatter, unit, entry });
     }
 }
 
@@ -104,6 +108,8 @@ fn read_one(
 struct EntryScope<'a> {
     tables: &'a Tables,
     entry: &'a Entry,
+    /// Names of the entry whose numbers could not be read: what is wrong with them has been said.
+    broken: &'a BTreeSet<String>,
 }
 
 impl Scope for EntryScope<'_> {
@@ -132,14 +138,36 @@ impl Scope for EntryScope<'_> {
     }
 }
 
+fn id(
+    node: &Node,
+    fields: &mut Fields<'_>,
+    file: &File,
+    seen: &mut Seen,
+    problems: &mut Problems,
+) -> Option<String> {
+    let id_node = fields.require("id", problems)?;
+    let id = id_node.text("`id`", problems)?;
+    let fine = id.starts_with(|c: char| c.is_ascii_lowercase())
+        && id.chars().all(|c| c.is_ascii_lowercase() || c.is_ascii_digit() || c == '-');
+    if !fine {
+        problems.push(
+            Problem::at(id_node.place(), format!("`{id}` cannot be an id"))
+                .expected("lower-case letters, digits and hyphens, a letter first"),
+        );
+    }
+    seen.add(file.holds, id, file.overlaid, node, problems);
+    Some(id.to_owned())
+}
+
+/// What all entries have in common, and the names of its numbers that could not be read.
 fn entry(
+    id: &str,
     node: &Node,
     fields: &mut Fields<'_>,
     file: &File,
     tables: &Tables,
     problems: &mut Problems,
-) -> Option<Entry> {
-    let id_node = fields.require("id", problems);
+) -> (Entry, BTreeSet<String>) {
     let title = text_of(fields, "title", problems);
     let family = text_of(fields, "family", problems);
     let mut condition = Condition::default();
@@ -148,377 +176,82 @@ fn entry(
             clauses(node, excluded, tables, &mut condition, problems);
         }
     }
-    let basis = fields.require("basis", problems).and_then(|node| basis(node, problems));
-    let parameters =
-        fields.take("parameters").map(|node| parameters(node, tables, problems)).unwrap_or_default();
-    let joint = fields.take("joint_values").and_then(|node| joint(node, problems));
-    let correlations =
-        fields.take("correlations").map(|node| correlations(node, problems)).unwrap_or_default();
-    let curves = fields.take("curves").map(|node| curves(node, tables, problems)).unwrap_or_default();
-    let valid_over =
-        fields.take("valid_over").map(|node| valid_over(node, tables, problems)).unwrap_or_default();
-    let sources = fields.require("source", problems).map(|node| sources(node, &tables.works, problems));
+    let basis =
+        fields.require_like("basis", &one_of_bases(), problems).and_then(|node| basis(node, problems));
+    let numbers = read_numbers::read(id, fields, tables, problems);
+    let sources = fields
+        .require_like("source", "`source: ...`, one or more keys of sources.yaml", problems)
+        .map(|node| sources(node, &tables.works, problems));
     let meaning = text_of(fields, "meaning", problems);
     let exceptions = text_of(fields, "exceptions", problems);
-    let id = id_node?.text("the id", problems)?;
-    let fine = id.starts_with(|c: char| c.is_ascii_lowercase())
-        && id.chars().all(|c| c.is_ascii_lowercase() || c.is_ascii_digit() || c == '-');
-    if !fine {
-        problems.push(
-            Problem::at(id_node?.place(), format!("`{id}` cannot be an id"))
-                .expected("lower-case letters, digits and hyphens, a letter first"),
-        );
-    }
-    Some(Entry {
+    let entry = Entry {
         id: id.to_owned(),
         title: title.unwrap_or_else(|| id.replace('-', " ")),
         family: family.unwrap_or_default(),
         condition,
-        basis: basis?,
-        parameters,
-        joint,
-        correlations,
-        curves,
-        valid_over,
-        sources: sources?,
+        // One that is missing has been reported; the entry is then left out.
+        basis: basis.unwrap_or(Basis::Empirical),
+        parameters: numbers.parameters,
+        joint: numbers.joint,
+        correlations: numbers.correlations,
+        curves: numbers.curves,
+        valid_over: numbers.valid_over,
+        sources: sources.unwrap_or_default(),
         meaning,
         exceptions,
         place: node.place(),
+        places: numbers.places,
         overlaid: file.overlaid,
-    })
+    };
+    (entry, numbers.broken)
 }
 
 fn clauses(node: &Node, excluded: bool, tables: &Tables, condition: &mut Condition, problems: &mut Problems) {
-    let Kind::Map(entries) = &node.kind else {
-        problems.push(
-            Problem::at(node.place(), format!("the condition is {}", node.describe()))
-                .expected("a map from attribute to one word or a list of words"),
-        );
+    let what = if excluded { "`except`" } else { "`applies_to`" };
+    let Some(entries) = node.map(what, "a map from attribute to one word or a list of words", problems)
+    else {
         return;
     };
     for (key, value) in entries {
         let Some(attribute) = key.text("an attribute", problems) else { continue };
-        let Some(known) = tables.attributes.get(attribute) else {
-            problems.push(
-                Problem::at(key.place(), format!("`{attribute}` is not an attribute"))
-                    .nearest(nearest(attribute, tables.attributes.keys().map(String::as_str))),
-            );
-            continue;
-        };
+        let Some(known) = named(attribute, ATTRIBUTE, key, &tables.attributes, problems) else { continue };
         let mut words = Vec::new();
         for item in value.list("the words", true, problems).unwrap_or_default() {
             let Some(word) = item.text("a word", problems) else { continue };
-            if !known.words.contains_key(word) {
-                problems.push(
-                    Problem::at(item.place(), format!("`{word}` is not a word of `{attribute}`"))
-                        .nearest(nearest(word, known.words.keys().map(String::as_str))),
-                );
-            }
+            known_word(word, attribute, known, item, problems);
             words.push(word.to_owned());
         }
         condition.clauses.push(Clause { attribute: attribute.to_owned(), words, excluded });
     }
 }
 
-/// The entries of a map under one key of an entry.
-fn map<'a>(node: &'a Node, what: &str, problems: &mut Problems) -> Vec<(&'a str, &'a Node, &'a Node)> {
-    if let Kind::Map(entries) = &node.kind {
-        entries.iter().filter_map(|(key, value)| Some((key.text("a name", problems)?, key, value))).collect()
-    } else {
-        problems.push(Problem::at(node.place(), format!("{what} is {}", node.describe())).expected("a map"));
-        Vec::new()
-    }
-}
-
-fn parameters(node: &Node, tables: &Tables, problems: &mut Problems) -> BTreeMap<String, Parameter> {
-    let mut read = BTreeMap::new();
-    for (name, key, value) in map(node, "`parameters`", problems) {
-        check_name(name, key, problems);
-        check_shadow(name, key, tables, problems);
-        if let Some(parameter) = parameter(name, value, tables, problems) {
-            read.insert(name.to_owned(), parameter);
-        }
-    }
-    read
-}
-
-/// One name means one thing: a parameter may not have the name of a quantity, a constant or a function.
-fn check_shadow(name: &str, key: &Node, tables: &Tables, problems: &mut Problems) {
-    let what = if tables.quantities.contains_key(name) {
-        "a quantity"
-    } else if tables.constants.contains_key(name) {
-        "a constant"
-    } else if crate::formula::Function::from_name(name).is_some() {
-        "a function"
-    } else {
-        return;
-    };
-    problems.push(
-        Problem::at(key.place(), format!("`{name}` is {what} already"))
-            .expected("another name: one name means one thing everywhere"),
-    );
-}
-
-fn parameter(name: &str, node: &Node, tables: &Tables, problems: &mut Problems) -> Option<Parameter> {
-    // `{ value: ..., about: ... }` with more than a written value may hold, or a written value alone.
-    let details = matches!(&node.kind, Kind::Map(entries) if entries.iter().any(|(key, _)| {
-        matches!(&key.kind, Kind::Scalar(scalar) if scalar.text == "value")
-    }));
-    let (mut about, mut own_basis, mut own_provenance) = (None, None, Default::default());
-    let mut value_node = node;
-    if details {
-        let mut fields = Fields::of(node, "a parameter", problems)?;
-        value_node = fields.require("value", problems)?;
-        about = text_of(&mut fields, "about", problems);
-        own_basis = fields.take("basis").and_then(|node| basis(node, problems));
-        own_provenance = provenance(&mut fields, &tables.works, problems);
-        fields.finish(problems);
-    }
-    let mut unit: Option<Unit> = None;
-    let value = by_attribute(value_node, tables, problems, |node, problems| {
-        let reading = any_value(name, node, false, problems)?;
-        match &unit {
-            Some(first) if first.dimension() != reading.unit.dimension() => {
-                problems.push(Problem::at(
-                    node.place(),
-                    format!(
-                        "`{name}` is {} here and {} elsewhere",
-                        reading.unit.dimension(),
-                        first.dimension()
-                    ),
-                ));
-            }
-            _ => unit = Some(reading.unit),
-        }
-        distribution(reading.value)
-    })?;
-    Some(Parameter { value, unit: unit?, about, basis: own_basis, provenance: own_provenance })
-}
-
-fn distribution(value: Value) -> Option<Distribution> {
-    match value {
-        Value::Unknown(distribution) => Some(distribution),
-        // `any_value` was asked to refuse these.
-        Value::Free(_) => None,
-    }
-}
-
-fn joint(node: &Node, problems: &mut Problems) -> Option<Joint> {
-    let sets = node.list("`joint_values`", false, problems)?;
-    let mut joint = Joint::default();
-    let mut weights = Vec::new();
-    for (number, set) in sets.iter().enumerate() {
-        let mut weight = 1.0;
-        let mut names = 0;
-        for (name, key, value) in map(set, "a set", problems) {
-            if name == "weight" {
-                weight = exact(name, value, Dimension::NONE, problems).unwrap_or(1.0);
-                continue;
-            }
-            check_name(name, key, problems);
-            let reading = any_value(name, value, false, problems)?;
-            let Value::Unknown(Distribution::Exact(si)) = reading.value else {
-                problems.push(Problem::at(value.place(), format!("`{name}` is not one exact value")));
-                return None;
-            };
-            names += 1;
-            let dimension = reading.unit.dimension();
-            let unit = joint.units.entry(name.to_owned()).or_insert(reading.unit);
-            if unit.dimension() != dimension {
-                problems
-                    .push(Problem::at(value.place(), format!("`{name}` is {} elsewhere", unit.dimension())));
-            }
-            let values = joint.values.entry(name.to_owned()).or_default();
-            if values.len() != number {
-                problems.push(Problem::at(value.place(), format!("`{name}` is missing in an earlier set")));
-                return None;
-            }
-            values.push(si);
-        }
-        if names != joint.values.len() || weight.is_nan() || weight <= 0.0 {
-            problems.push(
-                Problem::at(set.place(), "the sets do not hold the same names, or a weight is not positive")
-                    .expected("every name in every set, weights above 0"),
-            );
-            return None;
-        }
-        weights.push(weight);
-    }
-    let total: f64 = weights.iter().sum();
-    let mut sum = 0.0;
-    joint.cumulated = weights
-        .iter()
-        .map(|weight| {
-            sum += weight / total;
-            sum
-        })
-        .collect();
-    if let Some(last) = joint.cumulated.last_mut() {
-        *last = 1.0;
-    }
-    (!joint.values.is_empty()).then_some(joint)
-}
-
-/// Correlations of an entry or a candidate: `[{ between: [a, b], coefficient: 0.4 }]`.
-pub(crate) fn correlations(node: &Node, problems: &mut Problems) -> Vec<Correlation> {
-    let mut read = Vec::new();
-    for item in node.list("`correlations`", false, problems).unwrap_or_default() {
-        let Some(mut fields) = Fields::of(item, "a correlation", problems) else { continue };
-        let between = fields.require("between", problems);
-        let coefficient = fields.require("coefficient", problems);
-        fields.finish(problems);
-        let (Some(between), Some(coefficient)) = (between, coefficient) else { continue };
-        let names: Vec<String> = between
-            .list("`between`", false, problems)
-            .unwrap_or_default()
-            .into_iter()
-            .filter_map(|node| node.text("a name", problems).map(str::to_owned))
-            .collect();
-        let value = exact("coefficient", coefficient, Dimension::NONE, problems);
-        let (Ok(mut between_names), Some(value)) = (<[String; 2]>::try_from(names), value) else {
-            problems
-                .push(Problem::at(between.place(), "a correlation is between two names").expected("[a, b]"));
-            continue;
+fn formula(node: &Node, scope: &EntryScope<'_>, problems: &mut Problems) -> Option<Formula> {
+    let Kind::Scalar(scalar) = &node.kind else {
+        let expected = match node.kind {
+            Kind::Null => "an expression such as `2 * diameter`",
+            _ => "one text: a formula that holds `[`, `,` or `: ` stands in quotes or below a `|`",
         };
-        between_names.sort();
-        if between_names[0] == between_names[1] {
-            problems.push(Problem::at(between.place(), format!("`{}` stands here twice", between_names[0])));
-        }
-        if !(value > -1.0 && value < 1.0) {
-            problems.push(
-                Problem::at(coefficient.place(), format!("the coefficient is {value}"))
-                    .expected("a number strictly between -1 and 1"),
-            );
-            continue;
-        }
-        read.push(Correlation { between: between_names, coefficient: value });
-    }
-    read
-}
-
-fn curves(node: &Node, tables: &Tables, problems: &mut Problems) -> BTreeMap<String, Arc<Curve>> {
-    let mut read = BTreeMap::new();
-    for (name, key, value) in map(node, "`curves`", problems) {
-        check_name(name, key, problems);
-        check_shadow(name, key, tables, problems);
-        if let Some(curve) = curve(name, value, tables, problems) {
-            read.insert(name.to_owned(), Arc::new(curve));
-        }
-    }
-    read
-}
-
-fn curve(name: &str, node: &Node, tables: &Tables, problems: &mut Problems) -> Option<Curve> {
-    let mut fields = Fields::of(node, "a curve", problems)?;
-    let of = fields.require("of", problems);
-    let at = fields.require("at", problems);
-    let gives = fields.require("gives", problems);
-    let pair = |argument, value| Axes { argument, value };
-    let axes = [
-        ("linear-linear", pair(Scale::Linear, Scale::Linear)),
-        ("linear-log", pair(Scale::Linear, Scale::Log)),
-        ("log-linear", pair(Scale::Log, Scale::Linear)),
-        ("log-log", pair(Scale::Log, Scale::Log)),
-        ("reciprocal-linear", pair(Scale::Reciprocal, Scale::Linear)),
-        ("reciprocal-log", pair(Scale::Reciprocal, Scale::Log)),
-    ];
-    let axes =
-        fields.require("axes", problems).and_then(|node| word(node, "a pair of axes", &axes, problems));
-    let between = [("straight", Between::Straight), ("monotone", Between::Monotone)];
-    let between = fields
-        .require("between", problems)
-        .and_then(|node| word(node, "a way between points", &between, problems));
-    let outside = [("refuse", Outside::Refuse), ("edge", Outside::Edge)];
-    let outside =
-        fields.require("outside", problems).and_then(|node| word(node, "a way outside", &outside, problems));
-    fields.finish(problems);
-    let of_name = of?.text("`of`", problems)?;
-    if !tables.quantities.contains_key(of_name) {
+        problems.push(Problem::at(node.place(), node.instead("the formula")).expected(expected));
+        return None;
+    };
+    let text = &scalar.text;
+    let rest = node.source.text[node.span.end..].trim_start();
+    if rest.starts_with(',') && text.matches('(').count() > text.matches(')').count() {
         problems.push(
-            Problem::at(of?.place(), format!("`{of_name}` is not a quantity"))
-                .nearest(nearest(of_name, tables.quantities.keys().map(String::as_str))),
+            Problem::at(node.place(), "the formula ends at a comma, which separates entries inside brackets")
+                .expected("quotes around the formula, or the entries on lines of their own"),
         );
         return None;
     }
-    let (argument, at) = points(name, at?, problems)?;
-    let (value, gives_values) = points(name, gives?, problems)?;
-    if argument != tables.quantities[of_name].dimension() {
-        problems.push(Problem::at(node.place(), format!("the points of `{name}` are {argument}")));
-        return None;
-    }
-    if at.len() != gives_values.len() {
-        problems.push(Problem::at(
-            node.place(),
-            format!("the curve `{name}` has {} points and {} values", at.len(), gives_values.len()),
-        ));
-        return None;
-    }
-    let points: Vec<(f64, f64)> = at.into_iter().zip(gives_values).collect();
-    let form = Form { argument, value, axes: axes?, between: between?, outside: outside? };
-    Curve::new(form, &points)
-        .map_err(|fault| problems.push(Problem::at(node.place(), format!("the curve `{name}`: {fault}"))))
-        .ok()
-}
-
-fn points(name: &str, node: &Node, problems: &mut Problems) -> Option<(Dimension, Vec<f64>)> {
-    let mut dimension = None;
-    let mut values = Vec::new();
-    for item in node.list("the points", false, problems)? {
-        let reading = any_value(name, item, false, problems)?;
-        let Value::Unknown(Distribution::Exact(si)) = reading.value else {
-            problems.push(Problem::at(item.place(), "a point is not one exact value"));
-            return None;
-        };
-        if *dimension.get_or_insert(reading.unit.dimension()) != reading.unit.dimension() {
-            problems.push(Problem::at(item.place(), format!("this point is {}", reading.unit.dimension())));
-            return None;
-        }
-        values.push(si);
-    }
-    Some((dimension?, values))
-}
-
-fn valid_over(node: &Node, tables: &Tables, problems: &mut Problems) -> BTreeMap<String, (f64, f64)> {
-    let mut read = BTreeMap::new();
-    for (name, key, value) in map(node, "`valid_over`", problems) {
-        let Some(quantity) = tables.quantities.get(name) else {
-            problems.push(
-                Problem::at(key.place(), format!("`{name}` is not a quantity"))
-                    .nearest(nearest(name, tables.quantities.keys().map(String::as_str))),
-            );
-            continue;
-        };
-        let ends: Option<Vec<f64>> = value.list("the range", false, problems).map(|ends| {
-            ends.into_iter().filter_map(|end| exact(name, end, quantity.dimension(), problems)).collect()
-        });
-        match ends.as_deref() {
-            Some([low, high]) if low < high => {
-                read.insert(name.to_owned(), (*low, *high));
-            }
-            _ => problems.push(
-                Problem::at(value.place(), format!("the range of `{name}` cannot be read"))
-                    .expected("[low, high], low below high"),
-            ),
-        }
-    }
-    read
-}
-
-fn formula(node: &Node, scope: &EntryScope<'_>, problems: &mut Problems) -> Option<Formula> {
-    let text = match &node.kind {
-        Kind::Scalar(scalar) => &scalar.text,
-        _ => {
-            problems.push(
-                Problem::at(node.place(), format!("the formula is {}", node.describe())).expected(
-                    "one text: a formula that holds `[`, `,` or `: ` stands in quotes or below a `|`",
-                ),
-            );
-            return None;
-        }
+    let faults = match Formula::read(text, scope) {
+        Ok(formula) => return Some(formula),
+        Err(faults) => faults,
     };
-    Formula::read(text, scope)
-        .map_err(|faults| faults.into_iter().for_each(|fault| problems.push(node.problem(fault))))
-        .ok()
+    let is_known = |name: Option<&str>| name.is_some_and(|name| scope.broken.contains(name));
+    for fault in faults.into_iter().filter(|fault| !is_known(text.get(fault.span.clone()))) {
+        problems.push(node.problem(fault));
+    }
+    None
 }
 
 type RelationParts = (String, RelationKind, u32, Formula, Option<ByAttribute<f64>>);
@@ -529,12 +262,17 @@ fn relation(
     problems: &mut Problems,
 ) -> Option<RelationParts> {
     let gives_node = fields.require("gives", problems);
-    let kind = fields.require("kind", problems).and_then(|node| kind(node, problems));
+    let kind = fields
+        .require_like("kind", "`kind: definition` or `kind: law`", problems)
+        .and_then(|node| kind(node, problems));
     let rank = fields.take("rank").and_then(|node| {
         let text = node.text("the rank", problems)?;
         text.parse::<u32>()
             .map_err(|_| {
-                problems.push(Problem::at(node.place(), format!("the rank `{text}` is no whole number")))
+                problems.push(
+                    Problem::at(node.place(), format!("the rank `{text}` is no whole number"))
+                        .expected("a whole number; the lowest is preferred"),
+                );
             })
             .ok()
     });
@@ -542,13 +280,7 @@ fn relation(
     let scatter = scatter(fields, scope, problems);
     let formula = formula(formula_node?, scope, problems);
     let gives = gives_node?.text("`gives`", problems)?;
-    let Some(quantity) = scope.tables.quantities.get(gives) else {
-        problems.push(
-            Problem::at(gives_node?.place(), format!("`{gives}` is not a quantity"))
-                .nearest(nearest(gives, scope.tables.quantities.keys().map(String::as_str))),
-        );
-        return None;
-    };
+    let quantity = named(gives, QUANTITY, gives_node?, &scope.tables.quantities, problems)?;
     let formula = formula?;
     if !formula.fits(quantity.dimension()) {
         problems.push(
@@ -596,29 +328,22 @@ fn constraint(
     scope: &EntryScope<'_>,
     problems: &mut Problems,
 ) -> Option<ConstraintParts> {
-    let available = fields.require("available", problems).and_then(|node| side(node, scope, problems));
-    let required = fields.require("required", problems).and_then(|node| side(node, scope, problems));
-    let unit = fields.take("unit").and_then(|node| unit(node, problems));
+    let [available, required] = ["available", "required"].map(|key| {
+        let expected = format!("`{key}: {SIDE}`");
+        let node = fields.require_like(key, &expected, problems)?;
+        side(&format!("`{key}`"), node, scope, problems)
+    });
+    let unit_node = fields.take("unit");
+    let unit = unit_node.and_then(|node| unit(node, problems));
     let speaks_of = fields.take("speaks_of").and_then(|node| {
         by_attribute(node, scope.tables, problems, |node, problems| {
             let name = node.text("`speaks_of`", problems)?;
-            if !scope.tables.quantities.contains_key(name) {
-                problems.push(
-                    Problem::at(node.place(), format!("`{name}` is not a quantity"))
-                        .nearest(nearest(name, scope.tables.quantities.keys().map(String::as_str))),
-                );
-            }
+            named(name, QUANTITY, node, &scope.tables.quantities, problems)?;
             Some(name.to_owned())
         })
     });
-    if scope.entry.meaning.is_none() {
-        problems
-            .push(Problem::at(node.place(), format!("the constraint `{}` has no `meaning`", scope.entry.id)));
-    }
-    if scope.entry.family.is_empty() {
-        problems
-            .push(Problem::at(node.place(), format!("the constraint `{}` has no `family`", scope.entry.id)));
-    }
+    let _ = fields.require_like("meaning", "`meaning: ...`, a sentence for the reports", problems);
+    let _ = fields.require_like("family", "`family: ...`, what belongs together in reports", problems);
     let (available, required) = (available?, required?);
     let dimension = match (available.formula.dimension(), required.formula.dimension()) {
         (Some(a), Some(b)) if a != b => {
@@ -637,8 +362,11 @@ fn constraint(
     let unit = unit.unwrap_or_else(|| unit_of_sides(scope.tables, &available, &required, dimension));
     if unit.dimension() != dimension {
         problems.push(
-            Problem::at(node.place(), format!("the unit of `{}` is {}", scope.entry.id, unit.dimension()))
-                .expected(format!("a unit of {dimension}")),
+            Problem::at(
+                unit_node.unwrap_or(node).place(),
+                format!("the unit of `{}` is {}", scope.entry.id, unit.dimension()),
+            )
+            .expected(format!("a unit of {dimension}, as its sides are")),
         );
         return None;
     }
@@ -662,8 +390,12 @@ fn unit_of_sides(tables: &Tables, available: &Side, required: &Side, dimension: 
         .unwrap_or_else(|| Unit::coherent(dimension))
 }
 
-fn side(node: &Node, scope: &EntryScope<'_>, problems: &mut Problems) -> Option<Side> {
-    let mut fields = Fields::of(node, "a side", problems)?;
+/// A side as it is written.
+const SIDE: &str = "{ says: words, formula: ... }";
+
+fn side(what: &str, node: &Node, scope: &EntryScope<'_>, problems: &mut Problems) -> Option<Side> {
+    node.map(what, &format!("`{SIDE}`"), problems)?;
+    let mut fields = Fields::of(node, what, problems)?;
     let says =
         fields.require("says", problems).and_then(|node| node.text("`says`", problems)).map(str::to_owned);
     let formula = fields.require("formula", problems).and_then(|node| formula(node, scope, problems));
@@ -693,37 +425,33 @@ fn figure(fields: &mut Fields<'_>, scope: &EntryScope<'_>, problems: &mut Proble
 fn habitat(node: &Node, tables: &Tables, problems: &mut Problems) -> Option<Habitat> {
     let mut fields = Fields::of(node, "a habitat", problems)?;
     let about =
-        fields.require("about", problems).and_then(|node| node.text("about", problems)).map(str::to_owned);
+        fields.require("about", problems).and_then(|node| node.text("`about`", problems)).map(str::to_owned);
     let environment_node = fields.require("environment", problems);
     let sources =
         fields.take("source").map(|node| sources(node, &tables.works, problems)).unwrap_or_default();
     fields.finish(problems);
     let mut environment: BTreeMap<String, Reading> = BTreeMap::new();
-    for (name, key, value) in map(environment_node?, "`environment`", problems) {
-        match tables.quantities.get(name) {
-            Some(quantity) if quantity.of == Of::Environment => {
-                let wanted = Wanted {
-                    name,
-                    dimension: quantity.dimension(),
-                    bounds: quantity.bounds,
-                    unit: &quantity.unit,
-                    may_be_free: false,
-                    folder: None,
-                };
-                if let Some(reading) = written::read(value, &wanted, problems) {
-                    environment.insert(name.to_owned(), reading);
-                }
-            }
-            Some(_) => {
-                problems.push(Problem::at(
-                    key.place(),
-                    format!("`{name}` is of the organism, not of its environment"),
-                ));
-            }
-            None => problems.push(
-                Problem::at(key.place(), format!("`{name}` is not a quantity"))
-                    .nearest(nearest(name, tables.quantities.keys().map(String::as_str))),
-            ),
+    let entries = environment_node?.map("`environment`", "a map from quantity to value", problems)?;
+    for (key, value) in entries {
+        let Some(name) = key.text("a quantity", problems) else { continue };
+        let Some(quantity) = named(name, QUANTITY, key, &tables.quantities, problems) else { continue };
+        if quantity.of == Of::Organism {
+            problems.push(
+                Problem::at(key.place(), format!("`{name}` is of the organism, not of its environment"))
+                    .expected("quantities of the environment"),
+            );
+            continue;
+        }
+        let wanted = Wanted {
+            name,
+            dimension: quantity.dimension(),
+            bounds: quantity.bounds,
+            unit: &quantity.unit,
+            may_be_free: false,
+            folder: None,
+        };
+        if let Some(reading) = written::read(value, &wanted, problems) {
+            environment.insert(name.to_owned(), reading);
         }
     }
     Some(Habitat { about: about?, environment, sources })

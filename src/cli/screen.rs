@@ -35,10 +35,10 @@ pub(super) struct Screen {
     #[arg(long, value_name = "FILE|DIR")]
     output: Option<PathBuf>,
     /// Make exactly N draws, the first N of the same draws [default: double from 65536 until settled]
-    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u64).range(1..=MOST_DRAWS))]
+    #[arg(long, value_name = "N", value_parser = draws)]
     draws: Option<u64>,
     /// Seed of the random streams
-    #[arg(long, value_name = "N", default_value_t = 1)]
+    #[arg(long, value_name = "N", default_value_t = 1, value_parser = seed, allow_negative_numbers = true)]
     seed: u64,
     #[command(flatten)]
     overlays: Overlays,
@@ -90,17 +90,28 @@ impl Gate {
 fn share(text: &str) -> Result<f64, String> {
     match text.parse::<f64>() {
         Ok(value) if (0.0..=1.0).contains(&value) => Ok(value),
-        _ => Err("a share is a number from 0 to 1".to_owned()),
+        _ => Err("a share is a number from 0 to 1, such as 0.95".to_owned()),
     }
+}
+
+fn draws(text: &str) -> Result<u64, String> {
+    match text.parse() {
+        Ok(draws) if (1..=MOST_DRAWS).contains(&draws) => Ok(draws),
+        _ => Err(format!("a number of draws is a whole number from 1 to {MOST_DRAWS}")),
+    }
+}
+
+fn seed(text: &str) -> Result<u64, String> {
+    text.parse().map_err(|_| format!("a seed is a whole number from 0 to {}", u64::MAX))
 }
 
 impl Screen {
     pub(super) fn run(&self) -> Ending {
         if self.pass_at <= self.fail_at {
-            output::complain(&format!(
-                "--pass-at {} is not above --fail-at {}: nothing could be marginal\n",
-                self.pass_at, self.fail_at
-            ));
+            let message = format!("--pass-at {} is not above --fail-at {}", self.pass_at, self.fail_at);
+            let mut problems = Problems::new();
+            problems.push(Problem::whole(message).expected("room between them, as in 0.95 and 0.05"));
+            report(&problems);
             return Ending::BadInput;
         }
         let catalog = match Catalog::load(&self.overlays.folders) {
@@ -111,11 +122,12 @@ impl Screen {
             }
         };
         let mut problems = self.unknown_ids(&catalog);
-        if !problems.is_empty() {
+        let known = problems.is_empty();
+        let candidates = self.read(&catalog, &mut problems);
+        if !known {
             report(&problems);
             return Ending::BadInput;
         }
-        let candidates = self.read(&catalog, &mut problems);
         let asked = Asked {
             settings: Settings {
                 seed: self.seed,

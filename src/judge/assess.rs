@@ -70,8 +70,9 @@ pub fn contradictions(
                     ),
                 )
                 .expected(format!(
-                    "one of them, or values that agree within their uncertainties (by `{}`: {})",
+                    "only one of the two, or values that agree within their uncertainties (`{}`: {} = {})",
                     relation.entry.id,
+                    identity.quantity,
                     relation.formula.text()
                 )),
             );

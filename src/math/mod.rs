@@ -3,7 +3,6 @@
 //! Plain IEEE operations only: nothing fused, nothing from the platform's mathematical library.
 
 pub mod brackets;
-pub mod factor;
 pub mod kernels;
 pub mod quantiles;
 pub mod streams;

@@ -1,17 +1,15 @@
 //! Formulas to nodes.
 
-use std::collections::{BTreeMap, BTreeSet};
+use std::collections::BTreeMap;
 
 use super::graph::{Arithmetic, Graph, InputKind, NodeId, Op};
 use super::resolve::{Producer, Resolver};
 use crate::candidate::Candidate;
-use crate::catalog::{ByAttribute, Catalog, Correlation, Entry, coefficient};
+use crate::catalog::{ByAttribute, Catalog, Correlations, Entry};
 use crate::formula::{Binary, Expr, ExprKind, Formula, Function, PowerSteps, power_steps};
-use crate::math::factor::cholesky;
 use crate::math::kernels;
 use crate::quantity::Distribution;
 use crate::quantity::written::Value;
-use crate::text::{Problem, Problems};
 
 /// A number that the organism may set.
 #[derive(Clone, Debug)]
@@ -61,26 +59,9 @@ impl<'a, 'r> Compiler<'a, 'r> {
     }
 
     /// Couples correlated streams: each takes a normal score that is a mix of independent ones (a Gaussian copula),
-    /// in name order. Adds a problem when the coefficients contradict each other.
-    pub(super) fn couple(
-        &mut self,
-        correlations: &[Correlation],
-        place: impl Fn() -> Problem,
-        problems: &mut Problems,
-    ) {
-        if correlations.is_empty() {
-            return;
-        }
-        let names: BTreeSet<&String> =
-            correlations.iter().flat_map(|correlation| &correlation.between).collect();
-        let names: Vec<&String> = names.into_iter().collect();
-        let Some(lower) = cholesky(names.len(), |i, j| coefficient(correlations, names[i], names[j])) else {
-            problems.push(
-                place()
-                    .expected("coefficients that can hold together: their matrix must be positive definite"),
-            );
-            return;
-        };
+    /// in name order. `stream` names the stream of a correlated name.
+    pub(super) fn couple(&mut self, correlations: &Correlations, stream: impl Fn(&str) -> String) {
+        let names: Vec<String> = correlations.names().iter().map(|name| stream(name)).collect();
         let independent: Vec<NodeId> = names
             .iter()
             .map(|name| {
@@ -88,7 +69,7 @@ impl<'a, 'r> Compiler<'a, 'r> {
                 self.graph.node(Op::Score(uniform))
             })
             .collect();
-        for (row, name) in lower.iter().zip(&names) {
+        for (row, name) in correlations.lower().iter().zip(&names) {
             let mut sum: Option<NodeId> = None;
             for (coefficient, score) in
                 row.iter().zip(&independent).filter(|(coefficient, _)| **coefficient != 0.0)
@@ -98,7 +79,7 @@ impl<'a, 'r> Compiler<'a, 'r> {
                 sum = Some(sum.map_or(term, |sum| self.binary(Arithmetic::Add, sum, term)));
             }
             if let Some(sum) = sum {
-                self.scores.insert((*name).clone(), sum);
+                self.scores.insert(name.clone(), sum);
             }
         }
     }
@@ -212,16 +193,10 @@ impl<'a, 'r> Compiler<'a, 'r> {
     }
 
     fn couple_entry(&mut self, entry: &Entry) {
-        let full = |name: &String| format!("{}.{name}", entry.id);
-        let known = entry.correlations.iter().any(|c| self.scores.contains_key(&full(&c.between[0])));
-        if !known {
-            let correlations: Vec<Correlation> = entry
-                .correlations
-                .iter()
-                .map(|c| Correlation { between: [full(&c.between[0]), full(&c.between[1])], ..c.clone() })
-                .collect();
-            // Contradictions in an entry's own coefficients are found when the catalogue is checked.
-            self.couple(&correlations, || Problem::whole(String::new()), &mut Problems::new());
+        let full = |name: &str| format!("{}.{name}", entry.id);
+        let first = entry.correlations.names().first();
+        if first.is_some_and(|first| !self.scores.contains_key(&full(first))) {
+            self.couple(&entry.correlations, full);
         }
     }
 

@@ -151,8 +151,7 @@ pub fn shape_key(candidate: &Candidate, only: &[String]) -> String {
         .iter()
         .map(|(name, adopted)| format!("{name} {:?}", adopted.reading.value))
         .collect();
-    let correlations: Vec<String> =
-        candidate.correlations.iter().map(|(correlation, _)| format!("{correlation:?}")).collect();
+    let correlations = candidate.correlations.pairs();
     format!("{:?}\n{stated:?}\n{adopted:?}\n{correlations:?}\n{only:?}", candidate.attributes)
 }
 
@@ -160,7 +159,7 @@ impl Plan {
     /// The plan for candidates of this one's shape; `only` limits it to these constraints (empty: all).
     ///
     /// # Errors
-    /// A cycle among the relations chosen, correlations that contradict each other.
+    /// A cycle among the relations chosen.
     pub fn new(catalog: &Catalog, candidate: &Candidate, only: &[String]) -> Result<Self, Problems> {
         let given: BTreeSet<String> = candidate.given.keys().cloned().collect();
         let habitat: BTreeSet<String> = candidate.from_habitat.keys().cloned().collect();
@@ -192,7 +191,7 @@ impl Plan {
         }
 
         let mut compiler = compile::Compiler::new(catalog, candidate, &mut resolver);
-        couple(&mut compiler, candidate, &mut problems);
+        compiler.couple(&candidate.correlations, str::to_owned);
         let sides: Vec<(NodeId, NodeId)> = chosen
             .iter()
             .map(|(at, _)| {
@@ -334,17 +333,6 @@ fn standing_of<'a>(
         return Standing::Outside(Outside::DefaultsAlone);
     }
     Standing::Ready(support)
-}
-
-fn couple(compiler: &mut compile::Compiler<'_, '_>, candidate: &Candidate, problems: &mut Problems) {
-    let correlations: Vec<_> =
-        candidate.correlations.iter().map(|(correlation, _)| correlation.clone()).collect();
-    let place = candidate.correlations.first().map(|(_, place)| place.clone());
-    let problem = || {
-        let message = "the correlations contradict each other";
-        place.clone().map_or_else(|| Problem::whole(message), |place| Problem::at(place, message))
-    };
-    compiler.couple(&correlations, problem, problems);
 }
 
 /// Stated quantities that a definition also gives from other stated ones.

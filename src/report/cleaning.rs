@@ -54,9 +54,6 @@ fn constraint(result: &mut ConstraintResult) {
     each(result.exceptions.as_mut_slice());
     each(result.reason.as_mut_slice());
     each(&mut result.sources);
-    for doubt in &mut result.doubts {
-        each(&mut [&mut doubt.what, &mut doubt.standing]);
-    }
     for group in &mut result.missing {
         each(group);
     }

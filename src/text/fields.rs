@@ -17,34 +17,39 @@ pub struct Fields<'a> {
 impl<'a> Fields<'a> {
     /// The map's fields; adds a problem and gives `None` when `node` is no map. `what` names it: "a relation".
     pub fn of(node: &'a Node, what: &str, problems: &mut Problems) -> Option<Self> {
-        if let Kind::Map(entries) = &node.kind {
-            Some(Self { node, entries, what: what.to_owned(), asked: Vec::new(), rest_taken: false })
-        } else {
-            let blank = match &node.kind {
-                Kind::Scalar(scalar) if !scalar.quoted => with_blank(&scalar.text),
-                _ => None,
-            };
-            let expected = blank
-                .map_or("a map".to_owned(), |text| format!("a map, with a blank after the colon: `{text}`"));
-            problems
-                .push(Problem::at(node.place(), format!("{what} is {}", node.describe())).expected(expected));
-            None
-        }
+        let entries = node.map(what, "a map", problems)?;
+        Some(Self { node, entries, what: what.to_owned(), asked: Vec::new(), rest_taken: false })
     }
     /// The value of a key, if it stands there.
     pub fn take(&mut self, key: &'static str) -> Option<&'a Node> {
-        self.asked.push(key);
+        if !self.asked.contains(&key) {
+            self.asked.push(key);
+        }
         self.entries.iter().find(|(k, _)| key_text(k) == Some(key)).map(|(_, value)| value)
     }
     /// The value of a key; adds a problem when it is missing.
     pub fn require(&mut self, key: &'static str, problems: &mut Problems) -> Option<&'a Node> {
-        let found = self.take(key);
-        if found.is_none() {
-            let name = ["a ", "an ", "the "].iter().find_map(|article| self.what.strip_prefix(article));
-            let name = name.unwrap_or(&self.what);
-            problems.push(Problem::at(self.node.place(), format!("`{key}` is missing in the {name}")));
-        }
-        found
+        self.take(key).or_else(|| {
+            problems.push(self.missing(key));
+            None
+        })
+    }
+    /// The value of a key; adds a problem that shows how to write it when it is missing.
+    pub fn require_like(
+        &mut self,
+        key: &'static str,
+        example: &str,
+        problems: &mut Problems,
+    ) -> Option<&'a Node> {
+        self.take(key).or_else(|| {
+            problems.push(self.missing(key).expected(example));
+            None
+        })
+    }
+    fn missing(&self, key: &str) -> Problem {
+        let name = ["a ", "an "].iter().find_map(|article| self.what.strip_prefix(article));
+        let whole = name.map_or(self.what.clone(), |name| format!("the {name}"));
+        Problem::at(self.node.place(), format!("`{key}` is missing in {whole}"))
     }
     /// The entries that were not asked for so far, key and value; `finish` then reports nothing.
     pub fn rest(&mut self) -> Vec<(&'a Node, &'a Node)> {
@@ -53,17 +58,23 @@ impl<'a> Fields<'a> {
         self.entries.iter().filter(|(key, _)| unasked(key)).map(|(key, value)| (key, value)).collect()
     }
     /// Reports every key that was not asked for, with the nearest that was.
-    pub fn finish(mut self, problems: &mut Problems) {
+    pub fn finish(self, problems: &mut Problems) {
+        self.finish_or(|_| None, problems);
+    }
+    /// The same, but `elsewhere` may say where a key belongs.
+    pub fn finish_or(mut self, elsewhere: impl Fn(&str) -> Option<String>, problems: &mut Problems) {
         if self.rest_taken {
             return;
         }
         for (key, _) in self.rest() {
             let Some(text) = key_text(key) else { continue };
-            problems.push(
-                Problem::at(key.place(), format!("`{}` is not known here", shortened(text, 60)))
+            let problem = Problem::at(key.place(), format!("`{}` is not known here", shortened(text, 60)));
+            problems.push(match elsewhere(text) {
+                Some(expected) => problem.expected(expected),
+                None => problem
                     .expected(format!("one of {}", self.asked.join(", ")))
                     .nearest(nearest(text, self.asked.iter().copied())),
-            );
+            });
         }
     }
 }
@@ -86,9 +97,25 @@ pub(super) fn with_blank(text: &str) -> Option<String> {
     (is_name && is_value).then(|| format!("{name}: {}", shortened(value, 60)))
 }
 
+/// `diameter: 210 nm` for what was meant as an entry but is not one: a colon without a blank or of another alphabet, a blank
+/// that YAML does not know, an equals sign, no sign at all before a number.
+pub(super) fn as_entry(text: &str) -> Option<String> {
+    let length = text.find(|c: char| !(c.is_alphanumeric() || matches!(c, '_' | '-' | '.')))?;
+    let (name, rest) = text.split_at(length);
+    let after = rest.trim_start();
+    let value = match after.strip_prefix([':', '\u{ff1a}', '=']) {
+        Some(value) => value.trim_start(),
+        None if after.starts_with(|c: char| c.is_ascii_digit()) => after,
+        None => return None,
+    };
+    let is_entry =
+        name.starts_with(char::is_alphabetic) && !value.is_empty() && !value.starts_with([':', '/']);
+    is_entry.then(|| format!("{name}: {}", shortened(value, 60)))
+}
+
 #[cfg(test)]
 mod tests {
-    use super::{Fields, with_blank};
+    use super::{Fields, as_entry, with_blank};
     use crate::text::{Problems, Source, yaml};
 
     #[test]
@@ -141,7 +168,7 @@ s.yaml:4:1  `␇` is not known here
 s.yaml:6:3  the organism is the text `diameter:210 nm`
       diameter:210 nm
       ~~~~~~~~~~~~~~~
-   expected  a map, with a blank after the colon: `diameter: 210 nm`
+   expected  a map, here `diameter: 210 nm`
 
 s.yaml:7:11  `widht` is not known here
       habitat: {widht: 3 nm, temperature: 5 °C}
@@ -171,6 +198,24 @@ s.yaml:7:11  `widht` is not known here
         assert_eq!(with_blank("a-law.slope:[1, 2]").as_deref(), Some("a-law.slope: [1, 2]"));
         for other in ["https://a.org", "1:30", "a b:c", "a:", "a: b", "a::b", ""] {
             assert_eq!(with_blank(other), None, "{other}");
+        }
+    }
+
+    #[test]
+    fn what_was_meant_as_an_entry_is_shown_as_one() {
+        for text in [
+            "diameter:210 nm",
+            "diameter = 210 nm",
+            "diameter 210 nm",
+            "diameter:\u{a0}210 nm",
+            "diameter：210 nm",
+        ] {
+            assert_eq!(as_entry(text).as_deref(), Some("diameter: 210 nm"), "{text}");
+        }
+        for other in
+            ["a sphere of 210 nm", "https://a.org", "veskar-spring", "210 nm", "a:", "a::b", "diameter", ""]
+        {
+            assert_eq!(as_entry(other), None, "{other}");
         }
     }
 }

@@ -12,6 +12,6 @@ pub mod yaml;
 pub use fields::Fields;
 pub use node::{Kind, Node, Scalar};
 pub use problems::{Fault, Problem, Problems, nearest};
-pub use reading::MOST_BYTES;
+pub use reading::{MOST_BYTES, neighbour};
 pub use rendering::{shortened, visible};
 pub use source::{Place, Source, Span};

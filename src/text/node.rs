@@ -4,6 +4,7 @@ use std::ops::Range;
 use std::sync::Arc;
 
 use super::alignment::raw_range;
+use super::fields::as_entry;
 use super::problems::{Fault, Problem, Problems};
 use super::rendering::shortened;
 use super::source::{Place, Source, Span};
@@ -60,6 +61,14 @@ impl Node {
             Kind::Map(_) => "a map".to_owned(),
         }
     }
+    /// What stands here instead of what should, as a sentence: "the id is a list", "the id has no value".
+    #[must_use]
+    pub fn instead(&self, what: &str) -> String {
+        match self.kind {
+            Kind::Null => format!("{what} has no value"),
+            _ => format!("{what} is {}", self.describe()),
+        }
+    }
     /// Where these bytes of a scalar's text stand in the file, through quotes, escapes, folding and indentation. The whole
     /// node when that cannot be told, or when it is no scalar.
     #[must_use]
@@ -89,10 +98,28 @@ impl Node {
         if let Kind::Scalar(scalar) = &self.kind {
             Some(&scalar.text)
         } else {
-            problems
-                .push(Problem::at(self.place(), format!("{what} is {}", self.describe())).expected("a text"));
+            problems.push(Problem::at(self.place(), self.instead(what)).expected("a text"));
             None
         }
+    }
+    /// The entries of a map; adds a problem and gives `None` when it is something else. `what` names it, `expected` says
+    /// what stands in it: "a map from word to meaning".
+    pub fn map(&self, what: &str, expected: &str, problems: &mut Problems) -> Option<&[(Self, Self)]> {
+        if let Kind::Map(entries) = &self.kind {
+            return Some(entries);
+        }
+        let meant = match &self.kind {
+            Kind::Scalar(scalar) if !scalar.quoted => as_entry(&scalar.text).map(|entry| {
+                // A pasted blank or colon looks like an ordinary one.
+                let pasted = scalar.text.contains(|c: char| c == '\u{ff1a}' || c.is_whitespace() && c != ' ');
+                let with = if pasted { " with an ordinary colon and blank" } else { "" };
+                format!("{expected}, here `{entry}`{with}")
+            }),
+            _ => None,
+        };
+        let expected = meant.unwrap_or_else(|| expected.to_owned());
+        problems.push(Problem::at(self.place(), self.instead(what)).expected(expected));
+        None
     }
     /// The elements of a list; one scalar counts as a list of one when `or_one`.
     pub fn list(&self, what: &str, or_one: bool, problems: &mut Problems) -> Option<Vec<&Node>> {
@@ -100,9 +127,7 @@ impl Node {
             Kind::List(list) => Some(list.iter().collect()),
             Kind::Scalar(_) if or_one => Some(vec![self]),
             _ => {
-                problems.push(
-                    Problem::at(self.place(), format!("{what} is {}", self.describe())).expected("a list"),
-                );
+                problems.push(Problem::at(self.place(), self.instead(what)).expected("a list"));
                 None
             }
         }
@@ -164,7 +189,7 @@ mod tests {
             problems.to_string(),
             format!(
                 "\
-s.yaml:1:1  the id is nothing
+s.yaml:1:1  the id has no value
       a:
       ~
    expected  a text

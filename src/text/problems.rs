@@ -105,6 +105,11 @@ impl Problems {
         self.beyond += other.beyond;
         other.list.into_iter().for_each(|problem| self.push(problem));
     }
+    /// Whether so many were found that those after them are only counted: time to stop looking.
+    #[must_use]
+    pub fn is_full(&self) -> bool {
+        self.list.len() == KEPT
+    }
     /// Whether there are none.
     #[must_use]
     pub fn is_empty(&self) -> bool {
@@ -160,5 +165,6 @@ mod tests {
         problems.append(others);
         assert_eq!((problems.iter().len(), problems.len()), (KEPT, 2 * KEPT));
         assert!(!problems.is_empty() && Problems::new().is_empty());
+        assert!(problems.is_full() && !Problems::new().is_full());
     }
 }

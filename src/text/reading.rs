@@ -5,7 +5,7 @@ use std::io::{self, Read};
 use std::path::Path;
 use std::sync::Arc;
 
-use super::problems::Problem;
+use super::problems::{Problem, nearest};
 use super::source::Source;
 
 /// The most bytes that are read of one file.
@@ -17,9 +17,18 @@ impl Source {
     /// # Errors
     /// The file is missing, cannot be read, is a folder or no regular file, is larger than 16 MiB, or is no UTF-8 text.
     pub fn from_file(path: &Path) -> Result<Arc<Self>, Problem> {
-        let name = path.display().to_string();
-        let bytes = if name == "-" { limited(io::stdin().lock(), &name)? } else { file_bytes(path, &name)? };
-        Self::from_bytes(name, bytes)
+        if path.as_os_str() == "-" {
+            return Self::from_bytes("-", limited(io::stdin().lock(), "-")?);
+        }
+        Self::from_file_named(path, &path.display().to_string())
+    }
+
+    /// Reads a file under another name than its path.
+    ///
+    /// # Errors
+    /// The same.
+    pub fn from_file_named(path: &Path, name: &str) -> Result<Arc<Self>, Problem> {
+        Self::from_bytes(name, file_bytes(path, name)?)
     }
 
     /// A text from its bytes: UTF-8, with or without a byte order mark, without zero bytes.
@@ -51,7 +60,9 @@ impl Source {
 
 fn file_bytes(path: &Path, name: &str) -> Result<Vec<u8>, Problem> {
     let unreadable = |error: &io::Error| match error.kind() {
-        io::ErrorKind::NotFound => Problem::whole(format!("`{name}` does not exist")),
+        io::ErrorKind::NotFound => {
+            Problem::whole(format!("`{name}` does not exist")).nearest(neighbour(path, name))
+        }
         kind => Problem::whole(format!("`{name}` cannot be read: {kind}")),
     };
     // The kind of file comes before opening it: opening a pipe without a writer would wait for ever.
@@ -67,6 +78,21 @@ fn file_bytes(path: &Path, name: &str) -> Result<Vec<u8>, Problem> {
         return Err(too_large(name));
     }
     limited(File::open(path).map_err(|error| unreadable(&error))?, name)
+}
+
+/// What stands in the same folder under the name nearest to that of a path where nothing is, as somebody would write it
+/// who wrote the path as `name`.
+#[must_use]
+pub fn neighbour(path: &Path, name: &str) -> Option<String> {
+    let folder = path.parent()?;
+    let here = if folder.as_os_str().is_empty() { Path::new(".") } else { folder };
+    let mut names: Vec<String> =
+        here.read_dir().ok()?.filter_map(|entry| entry.ok()?.file_name().into_string().ok()).collect();
+    // The order in a folder is anyone's guess; of names equally near the first is taken.
+    names.sort();
+    let last = path.file_name()?.to_str()?;
+    let near = nearest(last, names.iter().map(String::as_str).filter(|name| *name != last))?;
+    Some(format!("{}{near}", name.strip_suffix(last)?))
 }
 
 /// Everything a reader gives, unless it gives too much.

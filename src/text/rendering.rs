@@ -10,6 +10,7 @@
 
 use std::borrow::Cow;
 use std::fmt;
+use std::sync::Arc;
 
 use unicode_width::{UnicodeWidthChar, UnicodeWidthStr};
 
@@ -24,8 +25,9 @@ const INDENT: usize = 6;
 const LEAST_ROOM: usize = 20;
 /// How many problems are shown.
 const MOST_SHOWN: usize = 100;
-/// How many characters of a message are shown.
+/// How many characters of a message are shown, and of what was expected.
 const LONGEST_MESSAGE: usize = 400;
+const LONGEST_ADVICE: usize = 800;
 
 impl Problems {
     /// All problems for a person, sorted by file and position, each once, at most 100 of them, within `width` columns
@@ -39,8 +41,20 @@ impl Problems {
         });
         list.dedup();
         let more = list.len().saturating_sub(MOST_SHOWN) + self.len() - self.iter().len();
-        let mut blocks: Vec<String> =
-            list.iter().take(MOST_SHOWN).map(|problem| problem.shown(width)).collect();
+        let mut blocks = Vec::new();
+        let mut known = None;
+        for problem in list.iter().take(MOST_SHOWN) {
+            let at = problem.place.as_ref().map(|place| match &known {
+                Some((source, byte, at)) if Arc::ptr_eq(source, &place.source) => {
+                    place.source.line_column_after((*byte, *at), place.span.start)
+                }
+                _ => place.line_column(),
+            });
+            if let (Some(place), Some(at)) = (&problem.place, at) {
+                known = Some((Arc::clone(&place.source), place.span.start, at));
+            }
+            blocks.push(problem.shown_at(at, width));
+        }
         if more > 0 {
             blocks.push(format!("and {more} more\n"));
         }
@@ -58,9 +72,13 @@ impl Problem {
     /// The problem for a person, within `width` columns where the text allows it. Ends with a line end.
     #[must_use]
     pub fn shown(&self, width: usize) -> String {
+        self.shown_at(self.place.as_ref().map(Place::line_column), width)
+    }
+
+    /// The same, where line and column are known already.
+    fn shown_at(&self, at: Option<(usize, usize)>, width: usize) -> String {
         let mut text = String::new();
-        if let Some(place) = &self.place {
-            let (line, column) = place.line_column();
+        if let (Some(place), Some((line, column))) = (&self.place, at) {
             text += &format!("{}:{line}:{column}  ", visible(&place.source.name));
         }
         text += &shortened(&visible(&self.message), LONGEST_MESSAGE);
@@ -70,7 +88,7 @@ impl Problem {
         }
         for (label, said) in [("expected", &self.expected), ("nearest", &self.nearest)] {
             if let Some(said) = said {
-                text += &labelled(label, &visible(said), width);
+                text += &labelled(label, &shortened(&visible(said), LONGEST_ADVICE), width);
             }
         }
         text
@@ -108,7 +126,9 @@ fn picture(c: char) -> Option<String> {
         '\u{0}'..='\u{1f}' => char::from_u32(0x2400 + u32::from(c)).map(String::from),
         '\u{7f}' => Some("\u{2421}".to_owned()),
         '\u{80}'..='\u{9f}'
+        | '\u{ad}'
         | '\u{61c}'
+        | '\u{180e}'
         | '\u{200b}'..='\u{200f}'
         | '\u{2028}'..='\u{202e}'
         | '\u{2060}'..='\u{206f}'
@@ -154,7 +174,8 @@ fn cells(characters: impl Iterator<Item = (char, bool)>, room: usize) -> (Vec<Ce
 fn underlined(place: &Place, room: usize) -> String {
     let source = &place.source;
     let span = source.span(place.span.start..place.span.end);
-    let line = source.line_at(span.start);
+    // No cell has more than four bytes, and `cells` stops at four cells a column: more of a long line is never shown.
+    let line = source.line_around(span.start, 16 * (room + 1));
     if source.text[line.clone()].trim().is_empty() && span.start >= line.end {
         return String::new();
     }

@@ -51,13 +51,27 @@ impl Source {
         let line = 1 + line_ends(before) - usize::from(splits_line_end(&self.text, before.len()));
         (line, before[self.line_start(before.len())..].chars().count() + 1)
     }
-    /// The bytes of the line that holds this byte, without its line end.
+    /// The line and the column of a byte after another one, of which they are known; takes time by the distance only.
     #[must_use]
-    pub fn line_at(&self, byte: usize) -> Range<usize> {
+    pub fn line_column_after(&self, (known, at): (usize, (usize, usize)), byte: usize) -> (usize, usize) {
+        if byte < known || splits_line_end(&self.text, known) || splits_line_end(&self.text, byte) {
+            return self.line_column(byte);
+        }
+        let between = &self.text[self.text.floor_char_boundary(known)..self.text.floor_char_boundary(byte)];
+        match between.rfind(['\n', '\r']) {
+            None => (at.0, at.1 + between.chars().count()),
+            Some(end) => (at.0 + line_ends(between), between[end + 1..].chars().count() + 1),
+        }
+    }
+    /// The bytes of the line that holds this byte, without its line end, as far as they lie within `most` bytes of it.
+    #[must_use]
+    pub fn line_around(&self, byte: usize, most: usize) -> Range<usize> {
         let byte = self.text.floor_char_boundary(byte);
-        let start = self.line_start(byte);
-        let length = self.text[start..].find(['\n', '\r']).unwrap_or(self.text.len() - start);
-        start..start + length
+        let byte = if splits_line_end(&self.text, byte) { byte - 1 } else { byte };
+        let around = self.span(byte.saturating_sub(most)..byte.saturating_add(most));
+        let start = self.text[around.start..byte].rfind(['\n', '\r']).map_or(0, |end| end + 1);
+        let length = self.text[byte..around.end].find(['\n', '\r']).unwrap_or(around.end - byte);
+        around.start + start..byte + length
     }
     fn line_start(&self, byte: usize) -> usize {
         let byte = if splits_line_end(&self.text, byte) { byte - 1 } else { byte };
@@ -81,12 +95,17 @@ impl Place {
 /// How many line ends stand in a text; `\r\n` is one.
 pub(super) fn line_ends(text: &str) -> usize {
     let bytes = text.as_bytes();
-    let feeds = bytes.iter().filter(|&&byte| byte == b'\n').count();
-    let returns = bytes.iter().filter(|&&byte| byte == b'\r').count();
+    let (feeds, returns) = (count(bytes, b'\n'), count(bytes, b'\r'));
     if returns == 0 {
         return feeds;
     }
     feeds + returns - bytes.windows(2).filter(|pair| pair == b"\r\n").count()
+}
+
+/// How often a byte stands in a text; sums within one byte are fast, which matters for many problems in a large file.
+fn count(bytes: &[u8], wanted: u8) -> usize {
+    let pieces = bytes.chunks(usize::from(u8::MAX));
+    pieces.map(|piece| usize::from(piece.iter().map(|&byte| u8::from(byte == wanted)).sum::<u8>())).sum()
 }
 
 /// Whether this byte stands between the two of a `\r\n`.
@@ -107,11 +126,19 @@ mod tests {
         assert_eq!(at("b"), (3, 1));
         assert_eq!(at("c"), (4, 1));
         assert_eq!(source.line_column(1_000), (4, 2));
-        assert_eq!(&source.text[source.line_at(source.text.find('m').unwrap())], "µm: 2");
+        for known in 0..=source.text.len() {
+            for byte in 0..=source.text.len() {
+                let after = source.line_column_after((known, source.line_column(known)), byte);
+                assert_eq!(after, source.line_column(byte), "{known} {byte}");
+            }
+        }
+        let line = |byte| &source.text[source.line_around(byte, 99)];
+        assert_eq!(line(source.text.find('m').unwrap()), "µm: 2");
         let feed = source.text.find("\r\n").unwrap() + 1;
         assert_eq!(source.line_column(feed), (2, 7));
-        assert_eq!(&source.text[source.line_at(feed)], "µm: 2");
-        assert_eq!(source.line_at(source.text.len()), 18..19);
+        assert_eq!(line(feed), "µm: 2");
+        assert_eq!(source.line_around(source.text.len(), 99), 18..19);
+        assert_eq!(&source.text[source.line_around(source.text.find('m').unwrap(), 2)], "µm:");
     }
 
     #[test]

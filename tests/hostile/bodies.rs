@@ -72,7 +72,8 @@ pub(crate) fn candidate(bytes: &[u8]) {
     for format in [Format::Terminal, Format::Lines, Format::Json, Format::Markdown, Format::Csv] {
         let text = report::render(format, &assessments, true, &options);
         if format == Format::Json {
-            let read: serde_json::Value = serde_json::from_str(&text).expect("what is printed as JSON is JSON");
+            let read: serde_json::Value =
+                serde_json::from_str(&text).expect("what is printed as JSON is JSON");
             assert_eq!(read.as_array().map(Vec::len), Some(assessments.len()));
         }
     }
@@ -161,8 +162,7 @@ fn reads_back(name: &str, value: &Value, unit: &Unit, bounds: Bounds) {
         Value::Unknown(distribution) => written::print(distribution, unit),
         Value::Free(range) => written::print_range(range, unit),
     };
-    let wanted =
-        Wanted { name, dimension: unit.dimension(), bounds, unit, may_be_free: true, folder: None };
+    let wanted = Wanted { name, dimension: unit.dimension(), bounds, unit, may_be_free: true, folder: None };
     let mut problems = Problems::new();
     let again = node(&format!("value: {text}\n"))
         .and_then(|node| written::read(&node, &wanted, &mut problems))

@@ -29,9 +29,10 @@ const CODATA: [(&str, f64); 16] = [
 fn constants_are_those_of_codata() {
     let catalog = Catalog::load(&[]).unwrap();
     let codata = BTreeMap::from(CODATA);
-    let cited = catalog.constants.iter().filter(|(_, constant)| {
-        constant.sources.iter().any(|source| source.starts_with("codata"))
-    });
+    let cited = catalog
+        .constants
+        .iter()
+        .filter(|(_, constant)| constant.sources.iter().any(|source| source.starts_with("codata")));
     let mut seen = 0;
     for (name, constant) in cited {
         let expected = codata.get(name.as_str()).unwrap_or_else(|| panic!("no value of `{name}` here"));

@@ -100,7 +100,10 @@ fn shares_below_tabulated_quantiles_are_their_probabilities() {
         let below = values.partition_point(|value| *value < quantile) as f64 / n;
         let errors = (below - p) / (p * (1.0 - p) / n).sqrt();
         println!("{quantity}: {written}: {below} below {quantile:e}, {errors:+.2} standard errors");
-        assert!(errors.abs() <= 4.0, "{quantity}: {written}: {below} below {quantile:e}, {errors:+.2} standard errors");
+        assert!(
+            errors.abs() <= 4.0,
+            "{quantity}: {written}: {below} below {quantile:e}, {errors:+.2} standard errors"
+        );
     }
 }
 

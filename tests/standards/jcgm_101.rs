@@ -265,7 +265,8 @@ fn widths_scatter_from_seed_to_seed() {
         for candidate in candidates(file) {
             let output = ["mass_deviation", "comparison_loss", "length_deviation"];
             let plan = Plan::new(catalog(), &candidate, &[]).unwrap();
-            let output = output.into_iter().find(|name| plan.quantities.iter().any(|q| q.name == *name)).unwrap();
+            let output =
+                output.into_iter().find(|name| plan.quantities.iter().any(|q| q.name == *name)).unwrap();
             let widths: Vec<f64> =
                 (2..18).map(|seed| shortest(&values(&candidate, output, seed), coverage)).collect();
             let mean = widths.iter().sum::<f64>() / widths.len() as f64;

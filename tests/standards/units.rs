@@ -59,7 +59,8 @@ fn factors_are_those_of_the_handbook() {
 #[test]
 fn temperatures_turn_at_the_fixed_points() {
     let celsius = Unit::read("°C").unwrap();
-    for (degrees, kelvin) in [(-273.15, 0.0), (0.0, 273.15), (0.01, 273.16), (25.0, 298.15), (100.0, 373.15)] {
+    for (degrees, kelvin) in [(-273.15, 0.0), (0.0, 273.15), (0.01, 273.16), (25.0, 298.15), (100.0, 373.15)]
+    {
         assert!((celsius.to_si(degrees) - kelvin).abs() < 1e-12);
         assert!((celsius.from_si(kelvin) - degrees).abs() < 1e-12);
     }

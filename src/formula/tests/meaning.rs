@@ -65,7 +65,9 @@ fn formulas_have_the_values_of_arithmetic() {
 
 #[test]
 fn of_equal_numbers_the_least_and_the_greatest_is_the_first() {
-    for (text, negative) in [("min(0, -0)", false), ("min(-0, 0)", true), ("max(-0, 0, -0)", true), ("max(0, -0)", false)] {
+    for (text, negative) in
+        [("min(0, -0)", false), ("min(-0, 0)", true), ("max(-0, 0, -0)", true), ("max(0, -0)", false)]
+    {
         assert_eq!(value(text).is_sign_negative(), negative, "{text}");
     }
 }

@@ -9,6 +9,8 @@ use super::dimension::{Dimension, Exponent};
 use crate::math::kernels;
 use crate::text::Fault;
 
+pub(in crate::quantity) use parser::ANY_UNIT;
+
 /// The longest text that is looked at, in bytes.
 const LONGEST: usize = 300;
 

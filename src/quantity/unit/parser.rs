@@ -7,12 +7,16 @@
 //! power    = "^" whole | "^" decimal | "^(" whole [ "/" whole ] ")" | superscript digits
 //! ```
 
+use std::borrow::Cow;
 use std::ops::Range;
 
 use super::symbols::{Found, find, suggestions};
 use crate::quantity::cursor::{Cursor, is_minus, is_slash, superscript};
 use crate::quantity::dimension::Exponent;
-use crate::text::Fault;
+use crate::text::{Fault, visible};
+
+/// What is expected where no unit stands and nothing more is known.
+pub(in crate::quantity) const ANY_UNIT: &str = "a unit such as `nm`, `kJ/mol` or `1/s`";
 
 /// Largest whole power.
 const LARGEST: i64 = 30;
@@ -171,7 +175,15 @@ impl Cursor<'_> {
             });
         }
         let symbol = &self.text[span.clone()];
-        let Some(found) = find(symbol) else { return Err(unknown(symbol, span)) };
+        let Some(found) = find(symbol) else {
+            return Err(match self.peek() {
+                // A character that is not seen may stand within the symbol.
+                Some(sign) if matches!(visible(sign.encode_utf8(&mut [0; 4])), Cow::Owned(_)) => {
+                    self.unexpected(sign)
+                }
+                _ => unknown(symbol, span),
+            });
+        };
         self.refuse_bare_power(&span)?;
         let power = self.power()?;
         Ok(Factor { found, power, below, span })
@@ -293,12 +305,23 @@ impl Cursor<'_> {
 
     fn unexpected(&self, sign: char) -> Fault {
         let span = self.at..self.end_of_sign();
-        let fault = Fault::new(span, format!("`{}` cannot stand in a unit here", sign.escape_debug()));
+        if sign.is_ascii_digit() {
+            return Fault::new(span, "a number stands in the unit").expected("one number, before the unit");
+        }
+        let shown = visible(sign.encode_utf8(&mut [0; 4])).into_owned();
+        let fault = Fault::new(span, format!("`{shown}` cannot stand in a unit here"));
         match sign {
+            _ if shown.starts_with("<U+") => {
+                fault.expected("the text without this character, which is not seen")
+            }
+            '\u{fffd}' => fault.expected("the character that was lost when the file was converted"),
+            ',' => fault.expected("one value without a comma after it; several as `{ values: [a, b] }`"),
+            '[' => fault.expected("a reference as a remark: `{ value: 210 nm, about: \"...\" }`"),
+            '±' => fault.expected("one uncertainty; independent ones add up by their squares"),
             '.' | '⋅' | '×' | '•' => fault.expected("`·` or a blank between symbols"),
             ')' => fault.expected("no parenthesis, or `(` after a slash"),
             '(' => fault.expected("parentheses only after a slash, as in `kJ/(mol h)`"),
-            _ => fault.expected("a unit such as `kJ/mol`, `µm^3` or `1/s`"),
+            _ => fault.expected(ANY_UNIT),
         }
     }
 }
@@ -310,11 +333,22 @@ fn unknown(symbol: &str, span: Range<usize>) -> Fault {
             return fault.expected("joules; a thermochemical calorie is 4.184 J");
         }
         "ppt" => return fault.expected("`‰` or `ppb`; `ppt` has two meanings"),
+        "°F" | "ºF" | "degF" => return fault.expected("`°C` or `K`"),
+        "psu" | "PSU" => {
+            // Within half a percent for sea water (IOC, SCOR and IAPSO 2010, the standard known as TEOS-10).
+            return fault.expected("`g/kg`; one unit of practical salinity is nearly one gram a kilogram");
+        }
         _ => {}
     }
+    if symbol.starts_with('Â') {
+        return fault.expected("the file converted anew: `Â` stands where UTF-8 was read as Latin-1");
+    }
+    if symbol.ends_with("°C") {
+        return fault.expected("`°C` without a prefix, or `mK` for a small difference");
+    }
     match suggestions(symbol).as_slice() {
-        [] => fault.expected("a unit such as `nm`, `kJ/mol` or `1/s`"),
-        [one] => fault.nearest(Some(one.clone())),
+        [] => fault.expected(ANY_UNIT),
+        [one] => fault.expected(ANY_UNIT).nearest(Some(one.clone())),
         several => {
             let several: Vec<_> = several.iter().map(|symbol| format!("`{symbol}`")).collect();
             fault.expected(several.join(" or "))
@@ -332,7 +366,7 @@ fn part(digits: &str) -> Option<i64> {
 }
 
 fn is_letter(c: char) -> bool {
-    c.is_alphabetic() && superscript(c).is_none() || matches!(c, '%' | '‰' | '°' | '℃' | '_' | 'ₙ')
+    c.is_alphabetic() && superscript(c).is_none() || matches!(c, '%' | '‰' | '°' | '˚' | '℃' | '_' | 'ₙ')
 }
 
 fn is_times(c: char) -> bool {

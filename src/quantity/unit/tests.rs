@@ -265,9 +265,11 @@ fn the_coherent_unit_of_a_dimension_is_read_with_factor_one() {
 
 fn any_unit() -> impl Strategy<Value = String> {
     let symbols: Vec<String> = all().map(|(text, _)| text).filter(|text| text != "°C").collect();
-    let factor =
-        (prop::sample::select(symbols), prop::sample::select(vec!["", "^2", "⁻¹", "^(1/2)", "^-0.25", "^0.111"]))
-            .prop_map(|(symbol, power)| format!("{symbol}{power}"));
+    let factor = (
+        prop::sample::select(symbols),
+        prop::sample::select(vec!["", "^2", "⁻¹", "^(1/2)", "^-0.25", "^0.111"]),
+    )
+        .prop_map(|(symbol, power)| format!("{symbol}{power}"));
     let product = prop::collection::vec(factor, 1..3);
     (product.clone(), prop::option::of(product)).prop_map(|(above, below)| match below {
         Some(below) => format!("{}/({})", above.join(" "), below.join("·")),

@@ -43,8 +43,11 @@ pub(super) fn expansion(text: &str, from: usize) -> Result<(Range<usize>, Option
         Some(factor) => Ok((from..open, Some(Expansion { factor, span }))),
         None => {
             let message = format!("`{}` does not say how the uncertainty was expanded", &text[span.clone()]);
-            Err(Fault::new(span, message)
-                .expected("`(k=2)` or `(95 %)`, or nothing for a standard uncertainty"))
+            let remark = quoted(text[content].trim());
+            Err(Fault::new(span, message).expected(format!(
+                "`(k=2)` or `(95 %)`, nothing for a standard uncertainty; a remark as `{{ value: {}, about: {remark} }}`",
+                before.trim_start()
+            )))
         }
     }
 }

@@ -13,13 +13,14 @@ impl Reader<'_, '_> {
         high: &'static str,
         logarithmic: bool,
     ) -> Option<(One, One)> {
-        let low_node = fields.require(low, self.problems);
-        let high_node = fields.require(high, self.problems);
+        let both = format!("`{{ {low}: ..., {high}: ... }}`");
+        let low_node = fields.require_like(low, &both, self.problems);
+        let high_node = fields.require_like(high, &both, self.problems);
         let low_end = low_node.and_then(|node| self.stated(node, low));
         let high_end = high_node.and_then(|node| self.stated(node, high));
         let (low_end, high_end) = (low_end?, high_end?);
         if low_end.si >= high_end.si {
-            self.refuse(high_node?, format!("`{high}` is not above `{low}`"), "the lower end first");
+            self.refuse(high_node?, format!("`{high}` is not above `{low}`"), "the lower end as the first");
             return None;
         }
         if logarithmic && low_end.si <= 0.0 {
@@ -59,14 +60,15 @@ impl Reader<'_, '_> {
             self.check_dimension(text, &one.unit, &one.number, &one.unit_span)?;
             Ok(one)
         });
-        read.map_err(|fault| self.problems.push(node.problem(fault))).ok()
+        read.map_err(|fault| self.problems.push(node.problem(self.fitting(fault, text)))).ok()
     }
 
     /// One number of the wanted dimension within the bounds.
     pub(super) fn stated(&mut self, node: &Node, what: &str) -> Option<One> {
         let one = self.one(node, what)?;
         let span = one.number.start..one.number.end.max(one.unit_span.end);
-        match self.check_bounds(one.si, span) {
+        let text = node.text(what, self.problems)?;
+        match self.check_bounds(one.si, &text[span.clone()], span) {
             Ok(()) => Some(one),
             Err(fault) => {
                 self.problems.push(node.problem(fault));

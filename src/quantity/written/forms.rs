@@ -3,7 +3,7 @@
 use super::expansion::coverage_factor;
 use super::samples::Column;
 use super::text::One;
-use super::{Reader, Reading, Value};
+use super::{Reader, Reading, Value, two_texts};
 use crate::math::kernels;
 use crate::quantity::distribution::{Distribution, FreeRange, on_grid};
 use crate::quantity::unit::Unit;
@@ -21,6 +21,9 @@ const FORMS: [(&[&str], Form); 9] = [
     (&["mode"], Form::Triangular),
     (&["min", "max"], Form::Uniform),
 ];
+
+/// How the ends of a free range are written.
+const TWO_ENDS: &str = "two ends, as in `[6 nm, 20 nm]`";
 
 #[derive(Clone, Copy)]
 enum Form {
@@ -103,8 +106,9 @@ impl Reader<'_, '_> {
     }
 
     fn normal(&mut self, fields: &mut Fields<'_>) -> Option<(Distribution, Unit)> {
-        let mean = fields.require("mean", self.problems).and_then(|node| self.one(node, "mean"));
-        let sd_node = fields.require("sd", self.problems)?;
+        let both = "`{ mean: ..., sd: ... }`";
+        let mean = fields.require_like("mean", both, self.problems).and_then(|node| self.one(node, "mean"));
+        let sd_node = fields.require_like("sd", both, self.problems)?;
         let sd = self.one(sd_node, "sd")?;
         // A standard deviation is a difference: 10 °C is 10 K.
         let spread = sd.unit.difference_to_si(sd.value);
@@ -121,8 +125,11 @@ impl Reader<'_, '_> {
     }
 
     fn lognormal(&mut self, fields: &mut Fields<'_>) -> Option<(Distribution, Unit)> {
-        let median = fields.require("median", self.problems).and_then(|node| self.above_zero(node, "median"));
-        let factor_node = fields.require("factor", self.problems)?;
+        let both = "`{ median: ..., factor: ... }`";
+        let median = fields
+            .require_like("median", both, self.problems)
+            .and_then(|node| self.above_zero(node, "median"));
+        let factor_node = fields.require_like("factor", both, self.problems)?;
         let factor = self.pure(factor_node, "factor")?;
         if factor <= 1.0 {
             self.refuse(
@@ -179,7 +186,11 @@ impl Reader<'_, '_> {
         let coverage = self.pure(coverage_node, "coverage").filter(|coverage| {
             let is_share = 0.0 < *coverage && *coverage < 1.0;
             if !is_share {
-                self.refuse(coverage_node, "the coverage is not between 0 and 1", "a share such as `0.95`");
+                self.refuse(
+                    coverage_node,
+                    "the coverage is not between 0 and 1",
+                    "a share such as `0.95` or `95 %`",
+                );
             }
             is_share
         });
@@ -245,7 +256,11 @@ impl Reader<'_, '_> {
             Some(node) => {
                 let nodes = node.list("`weights`", false, self.problems)?;
                 if nodes.len() != values.len() {
-                    let message = format!("there are {} weights for {} values", nodes.len(), values.len());
+                    let message = format!(
+                        "`weights` and `values` differ in length: {} and {}",
+                        nodes.len(),
+                        values.len()
+                    );
                     self.refuse(node, message, "one weight for each value");
                     return None;
                 }
@@ -292,8 +307,9 @@ impl Reader<'_, '_> {
     }
 
     fn sample(&mut self, node: &Node, fields: &mut Fields<'_>) -> Option<(Distribution, Unit)> {
-        let file = fields.require("sample", self.problems);
-        let column = fields.require("column", self.problems);
+        let all = "`{ sample: FILE, column: NAME, unit: UNIT }`";
+        let file = fields.require_like("sample", all, self.problems);
+        let column = fields.require_like("column", all, self.problems);
         let unit_node = fields.take("unit");
         let unit = match unit_node {
             None if self.wanted.dimension.is_none() => Some(Unit::none()),
@@ -311,10 +327,12 @@ impl Reader<'_, '_> {
             return None;
         };
         let wanted = Column { folder, file: file.1, name: column.1, unit: &unit };
-        let values = wanted.read(|si| self.check_bounds(si, 0..0));
-        let values = values.map_err(|(part, mut problem)| {
-            problem.place = Some(if part.is_column() { column.0.place() } else { file.0.place() });
-            self.problems.push(problem);
+        let values = wanted.read(|si, cell| self.check_bounds(si, &unit.after(cell), 0..0));
+        let values = values.map_err(|found| {
+            for (part, mut problem) in found {
+                problem.place = Some(if part.is_column() { column.0.place() } else { file.0.place() });
+                self.problems.push(problem);
+            }
         });
         let distribution = Distribution::Sample {
             file: file.1.into(),
@@ -338,17 +356,20 @@ impl Reader<'_, '_> {
         let stated_scale = self.scale(&mut fields);
         let typical_node = fields.take("typical");
         let range_node = fields.require("anywhere_in", self.problems)?;
-        let nodes = range_node.list("`anywhere_in`", false, self.problems);
         fields.finish(self.problems);
         if !self.wanted.may_be_free {
             let message = format!("`{}` is not for the organism to choose", self.wanted.name);
-            self.refuse(range_node, message, "`{ min: ..., max: ... }` for a number that is not known");
+            let (low, high) = two_texts(range_node).unwrap_or(("...", "..."));
+            let expected = format!("`{{ min: {low}, max: {high} }}` for a number that is not known");
+            self.refuse(range_node, message, expected);
             return None;
         }
-        let nodes = nodes?;
+        let Kind::List(nodes) = &range_node.kind else {
+            self.refuse(range_node, range_node.instead("`anywhere_in`"), TWO_ENDS);
+            return None;
+        };
         let [low_node, high_node] = nodes.as_slice() else {
-            let message = format!("`anywhere_in` has {} ends", nodes.len());
-            self.refuse(range_node, message, "two, as in `[6 nm, 20 nm]`");
+            self.refuse(range_node, "`anywhere_in` does not have two ends", TWO_ENDS);
             return None;
         };
         let low = self.stated(low_node, "the low end");

@@ -17,7 +17,8 @@ use std::path::Path;
 use super::digits::significant;
 use super::dimension::Dimension;
 use super::distribution::{Bounds, Distribution, FreeRange};
-use super::unit::Unit;
+use super::shown::{self, Precision};
+use super::unit::{ANY_UNIT, Unit};
 use crate::text::{Fault, Kind, Node, Place, Problem, Problems};
 
 pub use print::{print, print_range};
@@ -90,11 +91,15 @@ pub fn read(node: &Node, wanted: &Wanted<'_>, problems: &mut Problems) -> Option
         }
         Kind::Map(_) => reader.map(node),
         Kind::Null | Kind::List(_) => {
-            let expected = format!("{} such as `{}`", wanted.dimension, wanted.unit.after("1"));
-            problems.push(
-                Problem::at(node.place(), format!("`{}` is {}", wanted.name, node.describe()))
-                    .expected(expected),
-            );
+            let expected = match two_texts(node) {
+                Some((low, high)) => format!(
+                    "`{{ min: {low}, max: {high} }}` if everything between is equally likely, `{{ values: [{low}, \
+                     {high}] }}` for one of the two"
+                ),
+                None => wanted.example(),
+            };
+            let message = node.instead(&format!("`{}`", wanted.name));
+            problems.push(Problem::at(node.place(), message).expected(expected));
             None
         }
     }
@@ -112,6 +117,24 @@ pub fn read_any(name: &str, node: &Node, may_be_free: bool, problems: &mut Probl
         folder: None,
     };
     read(node, &wanted, problems)
+}
+
+impl Wanted<'_> {
+    /// A value that would do: `a length such as `1 nm``.
+    fn example(&self) -> String {
+        format!("{} such as `{}`", self.dimension, self.unit.after("1"))
+    }
+}
+
+/// The two texts of a list of two.
+fn two_texts(node: &Node) -> Option<(&str, &str)> {
+    let Kind::List(items) = &node.kind else { return None };
+    match items.as_slice() {
+        [Node { kind: Kind::Scalar(low), .. }, Node { kind: Kind::Scalar(high), .. }] => {
+            Some((&low.text, &high.text))
+        }
+        _ => None,
+    }
 }
 
 /// The unit of the first value that has one, in the order written.
@@ -157,11 +180,27 @@ impl Reader<'_, '_> {
         let read = text::parse(text).and_then(|parsed| {
             self.check_dimension(text, &parsed.unit, &parsed.number, &parsed.unit_span)?;
             if let Distribution::Exact(si) = parsed.distribution {
-                self.check_bounds(si, parsed.number.start..parsed.number.end.max(parsed.unit_span.end))?;
+                let span = parsed.number.start..parsed.number.end.max(parsed.unit_span.end);
+                self.check_bounds(si, &text[span.clone()], span)?;
             }
             Ok((parsed.distribution, parsed.unit))
         });
-        read.map_err(|fault| self.problems.push(node.problem(fault))).ok()
+        read.map_err(|fault| self.problems.push(node.problem(self.fitting(fault, text)))).ok()
+    }
+
+    /// Of a symbol that is no unit: what would be of the wanted dimension, and the nearest symbol only if it is.
+    fn fitting(&self, mut fault: Fault, text: &str) -> Fault {
+        if fault.expected.as_deref() != Some(ANY_UNIT) {
+            return fault;
+        }
+        fault.expected = Some(self.wanted.example());
+        let is_whole_unit =
+            text[..fault.span.start].trim_end().ends_with(|c: char| c.is_ascii_digit() || c == ')')
+                && text[fault.span.end..].trim().is_empty();
+        let fits =
+            |near: &String| Unit::read(near).is_ok_and(|unit| unit.dimension() == self.wanted.dimension);
+        fault.nearest = fault.nearest.filter(|near| !is_whole_unit || fits(near));
+        fault
     }
 
     fn check_dimension(
@@ -197,17 +236,25 @@ impl Reader<'_, '_> {
             .nearest(nearest))
     }
 
-    fn check_bounds(&self, si: f64, span: Range<usize>) -> Result<(), Fault> {
-        if self.wanted.bounds.contains(si) {
+    /// Refuses a value outside the bounds; `written` says it as it stands.
+    fn check_bounds(&self, si: f64, written: &str, span: Range<usize>) -> Result<(), Fault> {
+        let wanted = self.wanted;
+        if wanted.bounds.contains(si) {
             return Ok(());
         }
-        let message = format!("`{}` cannot be {}", self.wanted.name, self.shown(si));
-        Err(Fault::new(span, message).expected(self.allowed()))
+        let mut expected = self.allowed();
+        if wanted.dimension.is_none() && wanted.bounds.high == 1.0 && si <= 100.0 && si > 1.0 {
+            let percent = significant(si, 6);
+            if written.parse::<f64>().is_ok() {
+                expected += &format!("; `{percent} %` if that was meant");
+            }
+        }
+        Err(Fault::new(span, format!("`{}` cannot be `{written}`", wanted.name)).expected(expected))
     }
 
-    /// A value in the unit of messages.
+    /// A bound in a unit that reads well.
     fn shown(&self, si: f64) -> String {
-        self.wanted.unit.after(&significant(self.wanted.unit.from_si(si), 6))
+        shown::in_unit(si, Precision::UpTo(6), &self.wanted.unit)
     }
 
     /// The bounds in words.

@@ -3,7 +3,12 @@
 use std::ops::Range;
 
 use crate::quantity::cursor::{Cursor, is_minus, is_slash, superscript};
-use crate::text::Fault;
+use crate::text::{Fault, visible};
+
+/// What is expected where no number stands.
+const A_NUMBER: &str = "a number such as `210` or `2.1e-7`";
+/// The sizes that numbers can have, zero apart.
+pub(super) const SIZES: &str = "zero, or a size between 2.3e-308 and 1.7e308 in SI units";
 
 /// A number read.
 #[derive(Clone, Debug, PartialEq)]
@@ -38,12 +43,16 @@ pub(super) fn number(cursor: &mut Cursor<'_>) -> Result<Number, Fault> {
         let end = cursor.end_of_sign();
         let found = &cursor.text[start..end];
         let span = if found.is_empty() { cursor.last_character() } else { start..end };
+        if found.contains(['“', '”', '„', '‟', '‘', '’', '«', '»']) {
+            let message = format!("`{found}` is a typographic quote, which is a part of the text in YAML");
+            return Err(Fault::new(span, message).expected("straight quotes around the text, or none"));
+        }
         let message = if found.is_empty() {
             "a number is missing".to_owned()
         } else {
-            format!("`{}` stands where a number was expected", found.escape_debug())
+            format!("`{}` stands where a number was expected", visible(found))
         };
-        return Err(Fault::new(span, message).expected("a number such as `210` or `2.1e-7`"));
+        return Err(Fault::new(span, message).expected(A_NUMBER));
     }
     refuse_separators(cursor, start)?;
     let last_digits = last_digits(cursor, start)?;
@@ -105,11 +114,20 @@ pub(super) fn power_of_ten(cursor: &mut Cursor<'_>) -> Result<Option<i64>, Fault
     if digits.is_empty() {
         return Ok(None);
     }
-    // Pasted text loses the raised digits: `2 ×1014` was 2 × 10^14.
-    let fault = Fault::new(start..ahead.at, "a product of numbers stands where one number was expected");
-    Err(match digits.strip_prefix("10").filter(|power| !power.is_empty()) {
+    // Pasted text loses the raised digits: `2 ×1014` was 2 × 10^14, `2 × 10-7` was 2 × 10^-7.
+    let mut end = ahead;
+    let power = match digits.strip_prefix("10") {
+        Some("") => signed(&mut end).map(|power| power.to_string()),
+        power => power.map(str::to_owned),
+    };
+    let fault = Fault::new(start..end.at, "a product of numbers stands where one number was expected");
+    Err(match power {
         Some(power) => fault.expected(format!("`×10^{power}` if a power of ten was meant")),
-        None => fault.expected("a power of ten, as in `2×10^14`"),
+        None if matches!(sign, '·' | '\u{22c5}') => {
+            let whole = cursor.text[..start].rfind(|c: char| !c.is_ascii_digit()).map_or(0, |end| end + 1);
+            fault.expected(format!("`{}.{digits}` if a decimal point was meant", &cursor.text[whole..start]))
+        }
+        None => fault.expected("one number, or a power of ten as in `2×10^14`"),
     })
 }
 
@@ -172,11 +190,12 @@ fn last_digits(cursor: &mut Cursor<'_>, start: usize) -> Result<Option<Range<usi
         let inner = digits.start..ahead.digits().end;
         let number = &cursor.text[start..cursor.at];
         let inner = &cursor.text[inner];
+        ahead.takes(|c| c == ')');
         return Err(Fault::new(
             cursor.at..ahead.at,
             "a point stands within the parentheses, which count last digits",
         )
-        .expected(format!("`{number} ± {inner}`")));
+        .expected(format!("`{number} ± {inner}{}`", ahead.rest())));
     }
     Ok(None)
 }
@@ -186,9 +205,9 @@ fn checked(digits: &str, exponent: i64, text: &str, span: Range<usize>) -> Resul
     let value: f64 = format!("{digits}e{exponent}").parse().expect("digits and an exponent are a number");
     let written = &text[span.clone()];
     if !value.is_finite() {
-        Err(Fault::new(span, format!("`{written}` is larger than a number can be")))
+        Err(Fault::new(span, format!("`{written}` is larger than a number can be")).expected(SIZES))
     } else if !value.is_normal() && digits.bytes().any(|digit| (b'1'..=b'9').contains(&digit)) {
-        Err(Fault::new(span, format!("`{written}` is so small that it would vanish")))
+        Err(Fault::new(span, format!("`{written}` is so small that it would vanish")).expected(SIZES))
     } else {
         Ok(value)
     }
@@ -204,12 +223,13 @@ fn refuse_words(cursor: &Cursor<'_>) -> Result<(), Fault> {
         return Ok(());
     }
     let span = cursor.at..ahead.at;
+    let written = &cursor.text[span.clone()];
     let message = match cursor.text[word].to_lowercase().as_str() {
-        "nan" => "not a number stands where a number was expected".to_owned(),
-        "inf" | "infinity" | "∞" => "infinity stands where a finite number was expected".to_owned(),
-        _ => format!("`{}` stands where a number was expected", &cursor.text[span.clone()]),
+        "nan" => format!("`{written}` is not a number"),
+        "inf" | "infinity" | "∞" => format!("`{written}` is not a finite number"),
+        _ => format!("`{written}` stands where a number was expected"),
     };
-    Err(Fault::new(span, message).expected("a number such as `210` or `2.1e-7`"))
+    Err(Fault::new(span, message).expected(A_NUMBER))
 }
 
 /// Commas, blanks and marks within a number.

@@ -1,7 +1,7 @@
 //! Ways of writing that say too little: a limit on one side, "about", a range. Each is refused with the way to write it.
 
 use super::number::{Number, number};
-use crate::quantity::cursor::{Cursor, is_minus};
+use crate::quantity::cursor::{Cursor, is_minus, is_slash};
 use crate::quantity::digits::significant;
 use crate::quantity::unit::Unit;
 use crate::text::Fault;
@@ -66,7 +66,7 @@ pub(super) fn range(cursor: &Cursor<'_>, low: &Number) -> Result<(), Fault> {
         let is_word = word.is_some_and(|word| *word != "to " || text[..at].ends_with(char::is_whitespace));
         match word {
             Some(word) if is_word => Some((at, at + word.len())),
-            _ => is_minus(c).then(|| (at, at + c.len_utf8())),
+            _ => (is_minus(c) || c == '—').then(|| (at, at + c.len_utf8())),
         }
     });
     let fault = signs.find_map(|(at, end)| {
@@ -90,6 +90,48 @@ pub(super) fn range(cursor: &Cursor<'_>, low: &Number) -> Result<(), Fault> {
         )
     });
     fault.map_or(Ok(()), Err)
+}
+
+/// `1/3 µm`; the cursor stands after the first number.
+pub(super) fn fraction(cursor: &Cursor<'_>, above: &Number) -> Result<(), Fault> {
+    let mut ahead = *cursor;
+    ahead.skip_blanks();
+    if !ahead.takes(is_slash) {
+        return Ok(());
+    }
+    ahead.skip_blanks();
+    let Ok(below) = number(&mut ahead) else { return Ok(()) };
+    let fault = Fault::new(above.span.start..ahead.at, "a fraction stands where one number was expected");
+    Err(match Unit::read(ahead.rest()) {
+        Ok(unit) => fault.expected(format!("`{}`", unit.after(&significant(above.value / below.value, 6)))),
+        Err(_) => fault.expected("one number, then its unit"),
+    })
+}
+
+/// `210 +30 -20 nm`, `210 +30/-20 nm`; the cursor stands after the first number.
+pub(super) fn two_sided(cursor: &Cursor<'_>, middle: &Number) -> Result<(), Fault> {
+    let mut ahead = *cursor;
+    ahead.skip_blanks();
+    let start = ahead.at;
+    if ahead.peek() != Some('+') {
+        return Ok(());
+    }
+    let Ok(up) = number(&mut ahead) else { return Ok(()) };
+    ahead.skip_blanks();
+    ahead.takes(|c| is_slash(c) || c == ',');
+    ahead.skip_blanks();
+    if !ahead.peek().is_some_and(is_minus) {
+        return Ok(());
+    }
+    let Some((down, unit)) = rest(&mut ahead) else { return Ok(()) };
+    let end = |value: f64| unit.after(&significant(value, 6));
+    let (low, high) = (end(middle.value + down.value), end(middle.value + up.value));
+    let middle = end(middle.value);
+    Err(Fault::new(start..cursor.text.len(), "an uncertainty of two different sides can mean several things")
+        .expected(format!(
+            "`{{ min: {low}, mode: {middle}, max: {high} }}` if the ends are the outermost values, `{{ low: {low}, \
+             high: {high}, coverage: 0.68, distribution: lognormal }}` if they are standard uncertainties"
+        )))
 }
 
 /// `210 (30) nm`: digits in parentheses stand straight after the number.

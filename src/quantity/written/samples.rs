@@ -1,16 +1,12 @@
 //! Columns of data files that a candidate refers to.
 
-use std::fs::File;
-use std::io::Read;
 use std::path::Path;
+use std::sync::Arc;
 
 use super::number::number;
 use crate::quantity::cursor::Cursor;
 use crate::quantity::unit::Unit;
-use crate::text::{Fault, Problem, nearest};
-
-/// The largest file that is read, in bytes.
-const LARGEST: u64 = 16 << 20;
+use crate::text::{Fault, Problem, Source, nearest, shortened};
 
 /// A column of a comma-separated file whose first line names the columns.
 pub(super) struct Column<'a> {
@@ -37,105 +33,150 @@ impl Part {
     }
 }
 
+/// How many wrong rows of a file are reported.
+const REPORTED: usize = 100;
+
+/// How many names of columns a message lists.
+const LISTED: usize = 12;
+
+/// How many columns a table may have.
+const MOST_COLUMNS: usize = 10_000;
+
+/// Problems, each with what it is about.
+type Found = Vec<(Part, Problem)>;
+
+/// The usual case, `12.5`, in a fraction of the time: digits with a point between them at most. Zero and what may
+/// overflow or vanish is left to the slow way.
+fn plain(cell: &str) -> Option<f64> {
+    let size = cell.strip_prefix('-').unwrap_or(cell);
+    let (whole, decimals) = size.split_once('.').unwrap_or((size, "0"));
+    let are_digits = |part: &str| !part.is_empty() && part.bytes().all(|byte| byte.is_ascii_digit());
+    (are_digits(whole) && are_digits(decimals))
+        .then(|| cell.parse().ok())?
+        .filter(|value: &f64| value.is_normal())
+}
+
 impl Column<'_> {
     /// The numbers in SI units, in the order of the rows; `check` refuses those that cannot be.
-    pub(super) fn read(&self, check: impl Fn(f64) -> Result<(), Fault>) -> Result<Vec<f64>, (Part, Problem)> {
-        let bytes = self.bytes().map_err(|problem| (Part::File, problem))?;
-        let of_file = |message: String| (Part::File, Problem::whole(message));
-        let text = std::str::from_utf8(&bytes)
-            .map_err(|_| of_file(format!("`{}` is not a text in UTF-8", self.file)))?;
-        let text = text.strip_prefix('\u{feff}').unwrap_or(text);
-        let mut reader = csv::ReaderBuilder::new().trim(csv::Trim::All).from_reader(text.as_bytes());
-        let wrong = |error: &csv::Error| of_file(format!("`{}` is not a table: {error}", self.file));
-        let header = reader.headers().map_err(|error| wrong(&error))?;
+    ///
+    /// # Errors
+    /// The file or the column is not what it should be, or every row that is wrong, up to 100.
+    pub(super) fn read(&self, check: impl Fn(f64, &str) -> Result<(), Fault>) -> Result<Vec<f64>, Found> {
+        let source = self.source().map_err(|problem| vec![(Part::File, problem)])?;
+        let first = source.text.lines().next().unwrap_or_default();
+        if first.matches(',').count() >= MOST_COLUMNS {
+            let problem = Problem::whole(format!("`{}` has more than {MOST_COLUMNS} columns", self.file));
+            return Err(vec![(Part::File, problem.expected("a row for each measurement"))]);
+        }
+        let mut reader = csv::ReaderBuilder::new().trim(csv::Trim::All).from_reader(source.text.as_bytes());
+        let header = reader.headers().map_err(|error| vec![(Part::File, self.broken(&error))])?;
+        let place = self.place(header).map_err(|found| vec![found])?;
+        let mut values = Vec::new();
+        let mut found = Vec::new();
+        let mut record = csv::StringRecord::new();
+        while found.len() < REPORTED {
+            match reader.read_record(&mut record) {
+                Ok(true) => {}
+                Ok(false) => break,
+                Err(error) => {
+                    found.push((Part::File, self.broken(&error)));
+                    continue;
+                }
+            }
+            let cell = record.get(place).unwrap_or_default();
+            match self.cell(cell).and_then(|si| check(si, cell).map(|()| si)) {
+                Ok(value) => values.push(value),
+                Err(fault) => {
+                    let line = record.position().map_or(0, csv::Position::line);
+                    let problem = Problem {
+                        place: None,
+                        message: format!("line {line} of `{}`: {}", self.file, fault.message),
+                        expected: fault.expected,
+                        nearest: fault.nearest,
+                    };
+                    found.push((Part::File, problem));
+                }
+            }
+        }
+        if values.is_empty() && found.is_empty() {
+            let problem = Problem::whole(format!("`{}` has no rows", self.file));
+            found.push((Part::File, problem.expected("numbers on the lines below the names of the columns")));
+        }
+        if found.is_empty() { Ok(values) } else { Err(found) }
+    }
+
+    /// Which of the columns it is.
+    fn place(&self, header: &csv::StringRecord) -> Result<usize, (Part, Problem)> {
         let mut places =
             header.iter().enumerate().filter(|(_, name)| *name == self.name).map(|(place, _)| place);
-        let place = match (places.next(), places.next()) {
-            (Some(place), None) => place,
+        match (places.next(), places.next()) {
+            (Some(place), None) => Ok(place),
             (Some(_), Some(_)) => {
                 let message = format!("`{}` has more than one column `{}`", self.file, self.name);
-                return Err((Part::Column, Problem::whole(message)));
+                Err((Part::Column, Problem::whole(message).expected("columns of different names")))
+            }
+            (None, _) if header.is_empty() => {
+                let problem = Problem::whole(format!("`{}` is empty", self.file));
+                Err((Part::File, problem.expected("a first line with the names of the columns")))
             }
             (None, _) => {
-                let known: Vec<_> = header.iter().map(|name| format!("`{name}`")).collect();
-                let problem = Problem::whole(format!("`{}` has no column `{}`", self.file, self.name))
-                    .expected(format!("one of {}", known.join(", ")))
-                    .nearest(nearest(self.name, header.iter()));
-                return Err((Part::Column, problem));
+                let known: Vec<_> =
+                    header.iter().take(LISTED).map(|name| format!("`{}`", shortened(name, 60))).collect();
+                let problem = Problem::whole(format!("`{}` has no column `{}`", self.file, self.name));
+                let expected =
+                    match header.get(0).filter(|name| header.len() == 1 && name.contains([';', '\t'])) {
+                        Some(_) => "commas between the columns, and points in decimal numbers".to_owned(),
+                        None if header.len() > LISTED => {
+                            format!("one of {} and {} more", known.join(", "), header.len() - LISTED)
+                        }
+                        None => format!("one of {}", known.join(", ")),
+                    };
+                Err((Part::Column, problem.expected(expected).nearest(nearest(self.name, header.iter()))))
             }
-        };
-        let mut values = Vec::new();
-        let mut record = csv::StringRecord::new();
-        while reader.read_record(&mut record).map_err(|error| wrong(&error))? {
-            let cell = record.get(place).unwrap_or_default();
-            let value = self.cell(cell).and_then(|si| check(si).map(|()| si));
-            let line = record.position().map_or(0, csv::Position::line);
-            values.push(value.map_err(|fault| {
-                let problem = Problem {
-                    place: None,
-                    message: format!("line {line} of `{}`: {}", self.file, fault.message),
-                    expected: fault.expected,
-                    nearest: fault.nearest,
-                };
-                (Part::File, problem)
-            })?);
         }
-        if values.is_empty() {
-            return Err(of_file(format!("`{}` has no rows", self.file)));
+    }
+
+    /// What is wrong with the file as a table.
+    fn broken(&self, error: &csv::Error) -> Problem {
+        match error.kind() {
+            csv::ErrorKind::UnequalLengths { pos, expected_len, len } => {
+                let line = pos.as_ref().map_or(0, csv::Position::line);
+                let message =
+                    format!("line {line} of `{}` has {len} cells, the first line {expected_len}", self.file);
+                Problem::whole(message).expected("a cell for each column in every line")
+            }
+            // What was read is a text in memory: nothing else can go wrong with it.
+            _ => Problem::whole(format!("`{}` is not a table", self.file))
+                .expected("values separated by commas"),
         }
-        Ok(values)
     }
 
     fn cell(&self, cell: &str) -> Result<f64, Fault> {
+        if let Some(si) = plain(cell).map(|value| self.unit.to_si(value)).filter(|si| si.is_normal()) {
+            return Ok(si);
+        }
         let mut cursor = Cursor::new(cell, 0);
         if cell.is_empty() {
             return Err(Fault::new(0..0, format!("`{}` is empty", self.name)).expected("a number"));
         }
-        let number = number(&mut cursor)?;
+        let alone = "a number alone; its unit stands in `unit`";
+        let number = number(&mut cursor).map_err(|fault| {
+            let message = format!("`{}` is not a number", shortened(cell, 60));
+            Fault::new(0..cell.len(), message).expected(fault.expected.unwrap_or_else(|| alone.to_owned()))
+        })?;
         if !cursor.rest().is_empty() || number.uncertainty.is_some() {
-            return Err(Fault::new(0..cell.len(), format!("`{cell}` is not a number"))
-                .expected("a number alone; its unit stands in `unit`"));
+            return Err(Fault::new(0..cell.len(), format!("`{}` is not a number", shortened(cell, 60)))
+                .expected(alone));
         }
         super::text::to_si(self.unit, &number, cell)
     }
 
-    fn bytes(&self) -> Result<Vec<u8>, Problem> {
+    fn source(&self) -> Result<Arc<Source>, Problem> {
         let named = Path::new(self.file);
         if self.file.is_empty() || named.is_absolute() {
-            return Err(Problem::whole(format!(
-                "`{}` is not a file named from the candidate's folder",
-                self.file
-            ))
-            .expected("a name such as `sizes.csv`"));
+            let message = format!("`{}` is not a file named from the candidate's folder", self.file);
+            return Err(Problem::whole(message).expected("a name such as `sizes.csv`"));
         }
-        let path = self.folder.join(named);
-        let unreadable = |error: &std::io::Error| {
-            let problem = Problem::whole(format!("`{}` cannot be read: {}", self.file, error.kind()));
-            problem.nearest(self.neighbour(&path))
-        };
-        // Looked at before it is opened: opening a pipe would wait for ever.
-        let about = std::fs::metadata(&path).map_err(|error| unreadable(&error))?;
-        if !about.is_file() {
-            return Err(
-                Problem::whole(format!("`{}` is not a file", self.file)).expected("a readable regular file")
-            );
-        }
-        let mut bytes = Vec::new();
-        let file = File::open(&path).map_err(|error| unreadable(&error))?;
-        file.take(LARGEST + 1).read_to_end(&mut bytes).map_err(|error| unreadable(&error))?;
-        if u64::try_from(bytes.len()).is_ok_and(|length| length <= LARGEST) {
-            Ok(bytes)
-        } else {
-            Err(Problem::whole(format!("`{}` is larger than 16 MiB", self.file)).expected("a smaller file"))
-        }
-    }
-
-    /// The file of the same folder whose name is nearest.
-    fn neighbour(&self, path: &Path) -> Option<String> {
-        let names: Vec<String> = std::fs::read_dir(path.parent()?)
-            .ok()?
-            .filter_map(|entry| entry.ok()?.file_name().into_string().ok())
-            .collect();
-        nearest(path.file_name()?.to_str()?, names.iter().map(String::as_str))
+        Source::from_file_named(&self.folder.join(named), self.file)
     }
 }

@@ -3,8 +3,8 @@
 use std::ops::Range;
 
 use super::expansion::{Expansion, expansion};
-use super::number::{Number, number, power_of_ten};
-use super::refused::{apart, one_sided, range, rough};
+use super::number::{Number, SIZES, number, power_of_ten};
+use super::refused::{apart, fraction, one_sided, range, rough, two_sided};
 use crate::math::kernels;
 use crate::quantity::cursor::Cursor;
 use crate::quantity::digits::significant;
@@ -137,6 +137,8 @@ fn single(cursor: &mut Cursor<'_>) -> Result<Parsed, Fault> {
     let text = cursor.text;
     let number = number(cursor)?;
     range(cursor, &number)?;
+    fraction(cursor, &number)?;
+    two_sided(cursor, &number)?;
     apart(cursor, &number)?;
     let (unit_text, expansion) = expansion(text, cursor.at)?;
     let (unit, unit_span) = unit(text, unit_text)?;
@@ -325,7 +327,7 @@ fn normal(
     let factor = expansion.map_or(1.0, |expansion| expansion.factor);
     let sd = stated.unit.difference_to_si(stated.size) / factor;
     if !sd.is_normal() {
-        return Err(fault("the uncertainty is not one that a number in SI units can hold"));
+        return Err(fault("the uncertainty is not one that a number in SI units can hold").expected(SIZES));
     }
     Ok(Distribution::Normal { mean: to_si(unit, mean, text)?, sd })
 }
@@ -365,5 +367,5 @@ pub(super) fn to_si(unit: &Unit, number: &Number, text: &str) -> Result<f64, Fau
     }
     let written = unit.after(&text[number.span.clone()]);
     let size = if si.is_finite() { "so small that it would vanish" } else { "larger than a number can be" };
-    Err(Fault::new(number.span.clone(), format!("`{written}` is {size} in SI units")))
+    Err(Fault::new(number.span.clone(), format!("`{written}` is {size} in SI units")).expected(SIZES))
 }

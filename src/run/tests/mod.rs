@@ -42,9 +42,8 @@ fn try_ready(quantities: &str, constraints: &str, organism: &str) -> Result<Read
 }
 
 fn candidate(catalog: &Catalog, organism: &str) -> Candidate {
-    let text = format!(
-        "hypobiont: 1\nname: test\nattributes: {{ body_plan: other }}\norganism: {{ {organism} }}\n"
-    );
+    let text =
+        format!("hypobiont: 1\nname: test\nattributes: {{ body_plan: other }}\norganism: {{ {organism} }}\n");
     let mut problems = Problems::new();
     let mut read = read_file(&Source::new("candidate.yaml", text), None, catalog, &mut problems);
     assert!(problems.is_empty(), "{problems}");

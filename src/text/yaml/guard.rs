@@ -11,13 +11,16 @@ use saphyr_parser::{Event, Marker, Parser, ScalarStyle, ScanError, Span as Marke
 
 use super::accidents::{self, Broken};
 use super::sections::Section;
-use super::surroundings::{Brackets, block_header, quoted_length};
+use super::surroundings::{Brackets, MOST_SIGNS, block_header, quoted_length};
 use crate::text::fields::with_blank;
 use crate::text::problems::Problem;
 use crate::text::source::{Place, Source, Span};
 
 /// How many lists and maps may stand within each other.
 pub(super) const DEEPEST: usize = 64;
+/// How many lists, maps, keys and values a document may hold, together. A candidate has some fifty, a large file of a
+/// catalogue some thousands; a tree of so many takes about 40 MB.
+pub(super) const MOST_NODES: usize = 100_000;
 /// How many characters a key may have; YAML's own limit for a key before a colon.
 const LONGEST_KEY: usize = 1024;
 /// How many refusals of one document are reported.
@@ -59,6 +62,15 @@ struct Open {
 /// Checks one document. The problems are never empty.
 pub(super) fn check(source: &Arc<Source>, section: &Section) -> Result<Vec<Item>, Vec<Problem>> {
     let document = &source.text[section.bytes.clone()];
+    if document.len() > MOST_SIGNS {
+        // A bracket may begin a key, so the parser reads up to its end before it gives a first event.
+        let start = section.bytes.start;
+        let mut brackets = Brackets::new(Vec::new(), start);
+        brackets.advance(&source.text, section.bytes.end);
+        if brackets.signs > MOST_SIGNS {
+            return Err(vec![too_many(Place::new(source, start..start + 1))]);
+        }
+    }
     let offsets = Offsets::of(document, section.bytes.start);
     let mut guard = Guard {
         source,
@@ -98,6 +110,12 @@ struct Guard<'a> {
 impl Guard<'_> {
     /// Takes one event; false when nothing after it should be read.
     fn event(&mut self, event: Event<'_>, at: Marked) -> bool {
+        let is_node = matches!(event, Event::Scalar(..) | Event::SequenceStart(..) | Event::MappingStart(..));
+        if is_node && self.items.len() == MOST_NODES {
+            let start = self.offsets.byte(at.start);
+            self.refused.push(too_many(Place::new(self.source, start..start + 1)));
+            return false;
+        }
         match event {
             Event::Scalar(text, style, anchor, tag) => {
                 self.refuse_properties(anchor, tag.is_some(), at);
@@ -193,6 +211,18 @@ impl Guard<'_> {
         if self.source.text[span.start..span.end].contains(['\n', '\r']) {
             self.refused
                 .push(Problem::at(place, "a key runs over several lines").expected("a key on one line"));
+            return;
+        }
+        if let Some((at, blank)) = text.char_indices().find(|(_, c)| c.is_whitespace() && *c != ' ')
+            && plain
+        {
+            // Pasted from a page: not seen, and a part of the key for YAML.
+            let place = Place::new(self.source, span.start + at..span.start + at + blank.len_utf8());
+            let message =
+                format!("a blank of another kind, U+{:04X}, is a part of the key", u32::from(blank));
+            self.refused.push(
+                Problem::at(place, message).expected(format!("ordinary blanks: `{}`", unblanked(text))),
+            );
             return;
         }
         if text.chars().count() > LONGEST_KEY {
@@ -367,6 +397,16 @@ impl Guard<'_> {
         let before = self.source.text[..start].trim_end();
         if before.ends_with('-') { before.len() - 1..before.len() } else { start..start }
     }
+}
+
+/// A key with ordinary blanks, and none around it.
+fn unblanked(text: &str) -> String {
+    text.split_whitespace().collect::<Vec<_>>().join(" ")
+}
+
+fn too_many(place: Place) -> Problem {
+    Problem::at(place, format!("the document holds more than {MOST_NODES} keys and values"))
+        .expected("several documents or files; many measured values in a table that `sample` names")
 }
 
 fn too_deep(place: Place) -> Problem {

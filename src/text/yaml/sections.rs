@@ -22,15 +22,18 @@ pub(super) struct Section {
     after_end: Option<Range<usize>>,
 }
 
-/// Splits at the lines `---` and `...`. Text before the first marker, or after a `...`, is a document only if it holds
-/// something.
-pub(super) fn split(text: &str) -> Vec<Section> {
+/// Splits at the lines `---` and `...`, into at most so many documents. Text before the first marker, or after a `...`, is
+/// a document only if it holds something.
+pub(super) fn split(text: &str, most: usize) -> Vec<Section> {
     let mut sections = Vec::new();
     // A byte order mark before the first line is no part of it.
     let mut position = text.len() - text.trim_start_matches(MARK).len();
     let mut open = Section { bytes: position..position, line: 0, holds_something: false, after_end: None };
     let mut explicit = false;
     for line in text[position..].split_inclusive(['\n', '\r']) {
+        if sections.len() == most {
+            return sections;
+        }
         let start = position;
         position += line.len();
         let after = line.strip_prefix(['-', '.']).filter(|_| is_marker(line)).map(|_| &line[3..]);
@@ -148,14 +151,14 @@ mod tests {
     use super::split;
 
     fn parts(text: &str) -> Vec<&str> {
-        split(text).into_iter().map(|section| &text[section.bytes]).collect()
+        split(text, 9).into_iter().map(|section| &text[section.bytes]).collect()
     }
 
     #[test]
     fn sections_know_the_lines_they_begin_with() {
         for end in ["\n", "\r\n", "\r"] {
             let text = "# x|a|...|# y|b|---||c|...|d".replace('|', end);
-            let lines: Vec<_> = split(&text).iter().map(|section| section.line).collect();
+            let lines: Vec<_> = split(&text, 9).iter().map(|section| section.line).collect();
             assert_eq!(lines, [1, 4, 6, 10], "{end:?}");
         }
     }
@@ -170,5 +173,6 @@ mod tests {
         assert_eq!(parts("---\n---\n"), ["---\n", "---\n"]);
         assert_eq!(parts("\u{feff}---\na\n"), ["---\na\n"]);
         assert_eq!(parts(""), [""; 0]);
+        assert_eq!(split("a\n---\nb\n---\nc\n", 2).len(), 2);
     }
 }

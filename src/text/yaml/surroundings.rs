@@ -3,6 +3,11 @@
 
 use std::ops::Range;
 
+use super::guard::MOST_NODES;
+
+/// How many signs may stand between brackets: quotes, a colon and a comma for every node.
+pub(super) const MOST_SIGNS: usize = 4 * MOST_NODES;
+
 /// A line of a document, in bytes of the source.
 #[derive(Clone, Copy, Debug)]
 pub(super) struct Line<'a> {
@@ -118,24 +123,31 @@ pub(super) struct Brackets {
     pub(super) quoted: Option<Range<usize>>,
     /// The first bracket that was closed by one of the other kind, and that one.
     pub(super) mismatched: Option<(usize, usize)>,
+    /// How many signs of YAML stood between brackets, outside quotes.
+    pub(super) signs: usize,
     at: usize,
 }
 
 impl Brackets {
     /// The state at byte `at`, between two nodes.
     pub(super) fn new(open: Vec<usize>, at: usize) -> Self {
-        Self { open, quoted: None, mismatched: None, at }
+        Self { open, quoted: None, mismatched: None, signs: 0, at }
     }
 
-    /// Moves on to byte `to`, or to where a quote opens that is not closed before it.
+    /// Moves on to byte `to`, or to where a quote opens that is not closed before it, or to one sign too many.
     pub(super) fn advance(&mut self, text: &str, to: usize) {
         let mut in_text = false;
+        let mut in_property = false;
         let mut previous = '\n';
         while self.at < to
+            && self.signs <= MOST_SIGNS
             && let Some(character) = text[self.at..to].chars().next()
         {
             let next = text[self.at + character.len_utf8()..].chars().next().unwrap_or('\n');
             let mut length = character.len_utf8();
+            if !self.open.is_empty() && ",:[]{}\"'?*&!-".contains(character) {
+                self.signs += 1;
+            }
             match character {
                 '\n' | '\r' => in_text = false,
                 '#' if previous.is_whitespace() => {
@@ -162,9 +174,11 @@ impl Brackets {
                     }
                     None => return,
                 },
-                '-' if next.is_whitespace() => {}
-                _ if !character.is_whitespace() => in_text = true,
-                _ => {}
+                '-' | '?' if next.is_whitespace() => {}
+                // An anchor or a tag stands before what it belongs to; after an alias nothing can stand.
+                '&' | '!' | '*' if !in_text => in_property = true,
+                _ if character.is_whitespace() => in_property = false,
+                _ => in_text |= !in_property,
             }
             self.at += length;
             previous = character;

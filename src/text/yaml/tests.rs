@@ -174,7 +174,7 @@ fn several_documents_are_numbered_and_empty_ones_passed_over() {
     assert_eq!(briefs("\u{feff}a: 1\r\n--- [b]\r\n"), numbered(&[(1, "{a: 1}"), (2, "[b]")]));
     assert_eq!(briefs("a: |\n  x\n---\nb"), numbered(&[(1, "{a: \"x\\n\"}"), (2, "b")]));
     for empty in ["", "\n", "# remark\n", "---\n", "---\n# remark\n...\n", "\u{feff}"] {
-        shows(empty, "`s.yaml` holds no document\n");
+        shows(empty, "`s.yaml` is empty, or holds nothing but remarks\n   expected  a document in YAML\n");
     }
 }
 

@@ -90,12 +90,10 @@ class Formula:
 
 def curve(at, gives, axes, between, outside):
     """A function through points: straight, or by the monotone cubics of Fritsch and Butland (1984)."""
-    scale = {
-        "linear": (lambda x: x, lambda x: x),
-        "log": (np.log, np.exp),
-        "reciprocal": (lambda x: -1 / x, lambda x: -1 / x),
-    }
-    (to_x, _), (to_y, from_y) = (scale[axis] for axis in axes.split("-"))
+    of_argument, of_value = axes.split("-")
+    # Turned round, a reciprocal increases with its argument.
+    to_x = {"linear": lambda x: x, "log": np.log, "reciprocal": lambda x: -1 / x}[of_argument]
+    to_y, from_y = {"linear": (lambda y: y, lambda y: y), "log": (np.log, np.exp)}[of_value]
     points, heights = to_x(np.array(at)), to_y(np.array(gives))
     if between == "monotone":
         slopes = monotone_slopes(points, heights)

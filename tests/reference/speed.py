@@ -53,12 +53,10 @@ class Writer(ast.NodeTransformer):
         if name in self.entry.curves:
             form = self.entry.node["curves"][name]
             if form["between"] != "straight" or form["axes"] != "reciprocal-log":
-                raise NotImplementedError(name)
-            at, gives = ([catalogue.exact(x) for x in form[key]] for key in ("at", "gives"))
-            places = ast.Constant([-1 / x for x in at])
-            place = ast.BinOp(ast.Constant(-1), ast.Div(), arguments[0])
-            height = ast.Call(ast.Name("np.interp"), [place, places, ast.Constant(np.log(gives).tolist())], [])
-            return ast.Call(ast.Name("np.exp"), [height], [])
+                raise NotImplementedError(f"{name}: {form['between']} curves on axes {form['axes']}")
+            at, gives = (np.array([catalogue.exact(x) for x in form[key]]) for key in ("at", "gives"))
+            points = f"{(-1 / at).tolist()}, {np.log(gives).tolist()}"
+            return ast.parse(f"np.exp(np.interp(-1 / ({ast.unparse(arguments[0])}), {points}))", mode="eval").body
         return ast.Call(ast.Name(f"np.{NAMES.get(name, name)}"), arguments, [])
 
     def visit_BinOp(self, node):

@@ -24,3 +24,5 @@ mod report;
 mod reproducible;
 #[cfg(test)]
 mod standards;
+#[cfg(test)]
+mod wrong_input;

@@ -2,7 +2,7 @@
 
 use std::collections::BTreeMap;
 use std::io::Write;
-use std::path::PathBuf;
+use std::path::{Path, PathBuf};
 use std::process::{Command, Output, Stdio};
 use std::sync::atomic::{AtomicU32, Ordering};
 
@@ -57,6 +57,11 @@ impl Run {
     pub(crate) fn input(mut self, bytes: impl AsRef<[u8]>) -> Self {
         self.input = Some(bytes.as_ref().to_vec());
         self
+    }
+
+    /// The folder of the run.
+    pub(crate) fn folder(&self) -> &Path {
+        &self.folder
     }
 
     /// Runs it.

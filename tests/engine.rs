@@ -55,6 +55,17 @@ fn a_name_and_a_body_plan_alone_are_not_assessed() {
 }
 
 #[test]
+fn what_is_missing_can_be_stated_of_one_form() {
+    // Mixing along the body concerns rods, filaments and helices. Their length is stated or follows from volume and
+    // width; a diameter or a thickness would give the volume of a sphere or a disc, which have no length.
+    let found = screen(
+        "hypobiont: 1\nname: formless\nattributes: { body_plan: prokaryotic-cell }\nenvironment: { temperature: 30 °C }\n",
+    );
+    let missing = &constraint(&found, "reach-of-a-genome")["missing"];
+    assert_eq!(*missing, serde_json::json!([["cell_volume", "length"], ["form"], ["length", "width"]]));
+}
+
+#[test]
 fn limits_that_hold_apart_but_never_together_fail() {
     let candidate = format!("{OTHER}organism: {{ diameter: 275 ± 25 nm }}\n");
     let found = overlaid(APART, "", "", &candidate).json();
@@ -296,6 +307,17 @@ fn a_correlation_is_that_of_normal_scores() {
 }
 
 #[test]
+fn a_correlation_with_a_resampled_quantity_is_refused() {
+    let candidate = format!(
+        "{OTHER}organism:\n  diameter: 275 ± 25 nm\n  width: {{ sample: w.csv, column: width, unit: nm }}\n\
+         correlations:\n  - {{ between: [diameter, width], coefficient: 0.5 }}\n"
+    );
+    let ended = Run::new("screen c.yaml").file("c.yaml", &candidate).file("w.csv", "width\n1\n2\n").output();
+    assert_eq!(ended.status, Some(2), "{}", ended.stdout);
+    assert!(ended.stderr.contains("`width` comes from a file"), "{}", ended.stderr);
+}
+
+#[test]
 fn numbers_that_come_in_sets_stay_together() {
     // a × b is 6 in every set, though a and b vary sixfold.
     let constraints = "
@@ -429,6 +451,28 @@ fn an_adopted_parameter_replaces_one_number_and_is_reported() {
 }
 
 #[test]
+fn values_that_span_hundreds_of_decades_keep_their_quantiles() {
+    let figure = "
+- id: wide
+  title: From e^-300 to e^300
+  applies_to: { body_plan: other }
+  basis: physical
+  formula: 'exp((diameter - 301 [nm]) / 1 [nm])'
+  unit: \"\"
+  source: invented
+";
+    let candidate = format!("{OTHER}organism: {{ diameter: {{ min: 1 nm, max: 601 nm }} }}\n");
+    let found = overlaid(APART, "", "", &candidate).file("over/figures/test.yaml", figure).json();
+    let list = found["quantities"].as_array().unwrap();
+    let wide = list.iter().find(|quantity| quantity["name"] == "wide").unwrap();
+    // The quantiles of the exponent are -270, 0 and 270, each within 1.2 at most.
+    for (quantile, expected) in [("low", -270.0), ("median", 0.0), ("high", 270.0)] {
+        let exponent = libm::log(wide[quantile].as_f64().unwrap());
+        assert!((exponent - expected).abs() < 8.0, "{quantile}: {exponent}");
+    }
+}
+
+#[test]
 fn fixed_draws_are_a_prefix_and_leave_settled_out() {
     let candidate = format!("{OTHER}organism: {{ diameter: 275 ± 25 nm }}\n");
     let run = |draws: &str| overlaid(APART, "", "", &candidate).arg("--draws").arg(draws).json();
@@ -441,4 +485,24 @@ fn fixed_draws_are_a_prefix_and_leave_settled_out() {
     assert!(holds(&few, 1000.0) <= holds(&many, 65_536.0));
     let default = overlaid(APART, "", "", &candidate).json();
     assert_eq!(default["constraints"], many["constraints"], "the default is the same draws");
+}
+
+#[test]
+fn a_run_that_does_not_settle_says_so() {
+    // 5 % of the draws lie two dex lower, whatever their number: the 5 % quantile cannot be told from them.
+    let limit = |number: usize| {
+        format!(
+            "- id: limit-{number}\n  title: Limit\n  family: one\n  basis: physical\n  available: {{ says: has, formula: diameter * \
+             luck }}\n  required: {{ says: needs, formula: diameter }}\n  parameters: {{ luck: {{ values: [1e-3, 0.1], weights: [0.05, \
+             0.95] }} }}\n  meaning: Invented.\n  source: invented\n"
+        )
+    };
+    let constraints: String = (0..8).map(limit).collect();
+    let candidate = format!("{OTHER}organism: {{ diameter: 300 nm }}\n");
+    let found = overlaid(&constraints, "", "", &candidate).json();
+    assert_eq!(found["run"]["settled"], false);
+    assert_eq!(found["run"]["draws"], found["run"]["cap"]);
+    let codes: Vec<&str> =
+        found["warnings"].as_array().unwrap().iter().filter_map(|warning| warning["code"].as_str()).collect();
+    assert!(codes.contains(&"cap-reached"), "{codes:?}");
 }

@@ -7,10 +7,22 @@ mod run;
 mod snapshot;
 
 #[cfg(test)]
+mod cells;
+#[cfg(test)]
 mod engine;
 #[cfg(test)]
+mod golden;
+#[cfg(test)]
+mod hostile;
+#[cfg(test)]
 mod layering;
+#[cfg(test)]
+mod readme;
 #[cfg(test)]
 mod report;
 #[cfg(test)]
 mod reproducible;
+#[cfg(test)]
+mod standards;
+#[cfg(test)]
+mod wrong_input;

@@ -3,11 +3,16 @@
 use std::fs;
 use std::path::Path;
 
+/// Whether approved outputs are to be written anew.
+pub(crate) fn rewriting() -> bool {
+    std::env::var_os("HYPOBIONT_REWRITE").is_some()
+}
+
 /// Compares a text with `tests/snapshots/NAME`; rewrites the file when HYPOBIONT_REWRITE is set.
 #[track_caller]
 pub(crate) fn compare(name: &str, text: &str) {
     let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("tests/snapshots").join(name);
-    if std::env::var_os("HYPOBIONT_REWRITE").is_some() {
+    if rewriting() {
         fs::create_dir_all(path.parent().unwrap()).unwrap();
         fs::write(&path, text).unwrap();
         return;

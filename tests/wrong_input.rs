@@ -4,10 +4,7 @@
 //! folder, the rest is what stands on standard error; standard output stays empty and the status is 2. HYPOBIONT_REWRITE
 //! writes the messages anew: read each as somebody who sees it for the first time.
 
-mod files;
-mod kinds;
 mod monsters;
-mod outputs;
 
 use std::collections::BTreeSet;
 use std::path::{Path, PathBuf};
@@ -47,7 +44,8 @@ fn differs(case: &Path) -> Option<String> {
         .current_dir(case.parent().unwrap())
         .output()
         .unwrap();
-    let (stdout, stderr) = (String::from_utf8(ended.stdout).unwrap(), String::from_utf8(ended.stderr).unwrap());
+    let (stdout, stderr) =
+        (String::from_utf8(ended.stdout).unwrap(), String::from_utf8(ended.stderr).unwrap());
     if ended.status.code() != Some(2) || !stdout.is_empty() || stderr.is_empty() {
         return Some(format!("{}: {:?}, {stdout:?}, {stderr:?}", case.display(), ended.status));
     }
@@ -77,7 +75,8 @@ fn every_wrong_input_gets_its_whole_message_and_status_2() {
 fn every_file_of_the_gallery_belongs_to_a_case() {
     let mut unused = BTreeSet::new();
     for folder in listed(&gallery()).into_iter().filter(|path| path.is_dir()) {
-        let all: String = listed(&folder).iter().filter_map(|path| std::fs::read_to_string(path).ok()).collect();
+        let all: String =
+            listed(&folder).iter().filter_map(|path| std::fs::read_to_string(path).ok()).collect();
         for path in listed(&folder) {
             let name = path.file_name().unwrap().to_str().unwrap();
             if !name.ends_with(".txt") && !all.contains(name) {

@@ -3,7 +3,7 @@
 mod read;
 mod references;
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 pub use read::read_file;
 
@@ -33,6 +33,8 @@ pub struct Candidate {
     pub document: usize,
     /// Attributes, with the defaults of those that it does not state.
     pub attributes: BTreeMap<String, String>,
+    /// Attributes that it states itself.
+    pub stated_attributes: BTreeSet<String>,
     /// Quantities it states itself, of the organism and of the environment.
     pub given: BTreeMap<String, Reading>,
     /// The habitat it refers to.

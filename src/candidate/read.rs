@@ -1,6 +1,6 @@
 //! Reading candidates: every problem of every document, each with its place.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 use std::path::Path;
 use std::sync::Arc;
 
@@ -72,6 +72,16 @@ impl Reader<'_> {
         fields.finish_or(|key| section_of(key, self.catalog), self.problems);
 
         let attributes = attributes_node.map(|node| self.attributes(node)).unwrap_or_default();
+        let stated_attributes = match attributes_node.map(|node| &node.kind) {
+            Some(Kind::Map(entries)) => entries
+                .iter()
+                .filter_map(|(key, _)| match &key.kind {
+                    Kind::Scalar(scalar) => Some(scalar.text.clone()),
+                    _ => None,
+                })
+                .collect(),
+            _ => BTreeSet::new(),
+        };
         let mut warnings = Vec::new();
         let mut given = BTreeMap::new();
         if let Some(node) = organism {
@@ -97,6 +107,7 @@ impl Reader<'_> {
             file: String::new(),
             document: 1,
             attributes,
+            stated_attributes,
             given,
             habitat,
             from_habitat,

@@ -75,6 +75,9 @@ impl Reader<'_> {
             Some(Value::Unknown(Distribution::Exact(_))) => {
                 Some(format!("`{name}` is exact and cannot be correlated"))
             }
+            Some(Value::Unknown(distribution)) if distribution.file().is_some() => {
+                Some(format!("`{name}` comes from a file, whose rows say how its columns go together"))
+            }
             Some(Value::Unknown(_)) => None,
         };
         let correlated = Correlated {

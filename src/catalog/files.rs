@@ -115,6 +115,25 @@ pub(super) fn overlay(folder: &Path, problems: &mut Problems) -> Vec<File> {
     found
 }
 
+/// Files given as paths inside a catalogue and texts, in the order given. A path that has no place there is a problem.
+pub(super) fn given(texts: &[(&str, &str)], overlaid: bool, problems: &mut Problems) -> Vec<File> {
+    let mut found = Vec::new();
+    for (path, text) in texts {
+        match Holds::of(path) {
+            Some(holds) => found.push(File { holds, source: Source::new(*path, *text), overlaid }),
+            None => problems.push(misplaced(path)),
+        }
+    }
+    found
+}
+
+fn misplaced(path: &str) -> Problem {
+    Problem::whole(format!("`{path}` has no place in a catalogue")).expected(
+        "quantities.yaml, attributes.yaml, constants.yaml, sources.yaml, or a file in relations/, constraints/, \
+         figures/ or habitats/",
+    )
+}
+
 fn collect_overlay(root: &Path, below: &str, found: &mut Vec<File>, problems: &mut Problems) {
     let folder = root.join(below);
     let entries = match std::fs::read_dir(&folder) {
@@ -154,12 +173,7 @@ fn collect_overlay(root: &Path, below: &str, found: &mut Vec<File>, problems: &m
                     Ok(source) => found.push(File { holds, source, overlaid: true }),
                     Err(problem) => problems.push(problem),
                 },
-                None => problems.push(
-                    Problem::whole(format!("`{}` has no place in a catalogue", full.display())).expected(
-                        "quantities.yaml, attributes.yaml, constants.yaml, sources.yaml, or a file in relations/, \
-                         constraints/, figures/ or habitats/",
-                    ),
-                ),
+                None => problems.push(misplaced(&full.display().to_string())),
             }
         }
     }

@@ -68,6 +68,20 @@ impl Catalog {
         Self::from_files(&all, problems)
     }
 
+    /// A catalogue made of the texts alone, without the one inside the binary. Each layer is a list of files, path inside
+    /// a catalogue (`constraints/space.yaml`) and text; later layers are laid over earlier ones.
+    ///
+    /// # Errors
+    /// Everything that is wrong with the texts, and paths that have no place in a catalogue.
+    pub fn from_texts(layers: &[&[(&str, &str)]]) -> Result<Self, Problems> {
+        let mut problems = Problems::new();
+        let mut all = Vec::new();
+        for (number, layer) in layers.iter().enumerate() {
+            all.extend(files::given(layer, number > 0, &mut problems));
+        }
+        Self::from_files(&all, problems)
+    }
+
     fn from_files(all: &[files::File], mut problems: Problems) -> Result<Self, Problems> {
         let tables = read_tables::read(all, &mut problems);
         let entries = read_entries::read(all, &tables, &mut problems);

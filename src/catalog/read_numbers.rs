@@ -273,6 +273,8 @@ fn curve(name: &str, node: &Node, tables: &Tables, problems: &mut Problems) -> O
         ("linear-log", pair(Scale::Linear, Scale::Log)),
         ("log-linear", pair(Scale::Log, Scale::Linear)),
         ("log-log", pair(Scale::Log, Scale::Log)),
+        ("reciprocal-linear", pair(Scale::Reciprocal, Scale::Linear)),
+        ("reciprocal-log", pair(Scale::Reciprocal, Scale::Log)),
     ];
     let axes = fields
         .require_like("axes", CURVE, problems)

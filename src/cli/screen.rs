@@ -1,5 +1,6 @@
 //! `hypobiont screen`: the main job.
 
+use std::collections::BTreeSet;
 use std::io::{IsTerminal, stderr, stdout};
 use std::path::{Path, PathBuf};
 use std::sync::Mutex;
@@ -209,9 +210,11 @@ impl Screen {
             None => output::print(&reports::render(format, assessments, several, &options)),
             Some(path) if path.is_dir() => {
                 let mut ending = Ending::Ran;
+                let mut taken = BTreeSet::new();
                 for assessment in assessments {
                     let text = reports::render(format, std::slice::from_ref(assessment), false, &options);
-                    ending = ending.max(output::save(&path.join(file_name(assessment, format)), &text));
+                    let name = file_name(assessment, format, &mut taken);
+                    ending = ending.max(output::save(&path.join(name), &text));
                 }
                 ending
             }
@@ -253,13 +256,16 @@ fn quoted(word: &str) -> String {
     }
 }
 
-/// `stem-2.md` for the second document of `stem.yaml`.
-fn file_name(assessment: &Assessment, format: Format) -> String {
+/// `stem-2.md` for the second document of `stem.yaml`; of two files with one stem the later gets another number.
+fn file_name(assessment: &Assessment, format: Format, taken: &mut BTreeSet<String>) -> String {
     let path = Path::new(&assessment.file);
     let stem = path.file_stem().map(|stem| stem.to_string_lossy().into_owned()).filter(|stem| stem != "-");
     let stem = stem.unwrap_or_else(|| "candidate".to_owned());
-    let number = if assessment.document > 1 { format!("-{}", assessment.document) } else { String::new() };
-    format!("{stem}{number}.{}", format.ending())
+    let names = (assessment.document..).map(|number| {
+        let number = if number > 1 { format!("-{number}") } else { String::new() };
+        format!("{stem}{number}.{}", format.ending())
+    });
+    names.into_iter().find(|name| taken.insert(name.clone())).unwrap_or(stem)
 }
 
 /// Screens with progress on standard error beyond two seconds; wrong candidates are left out.

@@ -12,6 +12,8 @@ pub enum Scale {
     Linear,
     /// Equal ratios are equal distances.
     Log,
+    /// Equal differences of the reciprocal are equal distances: against temperature, an Arrhenius plot.
+    Reciprocal,
 }
 
 /// The scales of both axes; `linear-log` means a linear argument and a logarithmic value.
@@ -91,7 +93,7 @@ pub enum CurveFault {
         /// Which point.
         position: usize,
     },
-    /// Zero or less on a logarithmic axis.
+    /// Zero or less on a logarithmic or reciprocal axis.
     NotPositive {
         /// Which point.
         position: usize,
@@ -116,7 +118,11 @@ impl fmt::Display for CurveFault {
                 )
             }
             Self::NotPositive { position } => {
-                write!(f, "point {} of the curve is zero or negative on a logarithmic axis", position + 1)
+                write!(
+                    f,
+                    "point {} of the curve is zero or negative on a logarithmic or reciprocal axis",
+                    position + 1
+                )
             }
             Self::TooSteep { position } => {
                 write!(f, "the slope of the curve before point {} is not a finite number", position + 1)
@@ -144,7 +150,7 @@ impl Curve {
                 return Err(CurveFault::NotIncreasing { position });
             }
             let Axes { argument, value } = form.axes;
-            if (argument == Scale::Log && x <= 0.0) || (value == Scale::Log && y <= 0.0) {
+            if (argument != Scale::Linear && x <= 0.0) || (value != Scale::Linear && y <= 0.0) {
                 return Err(CurveFault::NotPositive { position });
             }
         }
@@ -186,6 +192,7 @@ impl Curve {
         match self.form.axes.value {
             Scale::Linear => placed,
             Scale::Log => kernels::exp(placed),
+            Scale::Reciprocal => -1.0 / placed,
         }
     }
 
@@ -204,11 +211,12 @@ impl Curve {
     }
 }
 
-/// Where a number stands on an axis.
+/// Where a number stands on an axis; a greater number always further on.
 fn place(scale: Scale, x: f64) -> f64 {
     match scale {
         Scale::Linear => x,
         Scale::Log => kernels::ln(x),
+        Scale::Reciprocal => -1.0 / x,
     }
 }
 

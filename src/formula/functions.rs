@@ -153,8 +153,8 @@ impl Function {
             Self::Erf => kernels::erf(x),
             Self::Erfc => kernels::erfc(x),
             Self::Abs => x.abs(),
-            Self::Min => rest.iter().fold(x, |least, &x| minimum(least, x)),
-            Self::Max => rest.iter().fold(x, |greatest, &x| maximum(greatest, x)),
+            Self::Min => rest.iter().fold(x, |least, &x| kernels::Arithmetic::Min.of(least, x)),
+            Self::Max => rest.iter().fold(x, |greatest, &x| kernels::Arithmetic::Max.of(greatest, x)),
         }
     }
 }
@@ -166,18 +166,6 @@ pub fn is_reserved(name: &str) -> bool {
         "and", "or", "not", "infinity", "choose", "solve", "integral", "sum", "product", "least", "greatest",
     ];
     WORDS.contains(&name) || Function::from_name(name).is_some()
-}
-
-/// The smaller of two; NaN if either is NaN; the second of two equal ones.
-#[must_use]
-pub fn minimum(a: f64, b: f64) -> f64 {
-    if a < b || a.is_nan() { a } else { b }
-}
-
-/// The larger of two; NaN if either is NaN; the second of two equal ones.
-#[must_use]
-pub fn maximum(a: f64, b: f64) -> f64 {
-    if a > b || a.is_nan() { a } else { b }
 }
 
 #[cfg(test)]

@@ -108,9 +108,12 @@ pub(super) fn exact_exponent(exponent: &Expr) -> Result<Option<Exponent>, Expone
             _ => None,
         },
         ExprKind::Binary(operator, left, right) => {
-            let (Some(left), Some(right)) = (exact_exponent(left)?, exact_exponent(right)?) else {
+            let (left, right) = (exact_exponent(left), exact_exponent(right));
+            // With a name on one side it is not made of literals, whatever the other side holds.
+            if left == Ok(None) || right == Ok(None) {
                 return Ok(None);
-            };
+            }
+            let (Some(left), Some(right)) = (left?, right?) else { return Ok(None) };
             let minus = Exponent::whole(-1);
             let result = match operator {
                 Binary::Add => left.plus(right),

@@ -1,6 +1,6 @@
 //! Builds the assessment of one candidate from its plan and its draws.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 use super::assessment::{
     Assessed, Assessment, Citation, ConstraintResult, DoubtfulGround, Extrapolation, Interval, Origin,
@@ -11,11 +11,13 @@ use crate::candidate::Candidate;
 use crate::catalog::{self, Basis, Catalog, Constraint};
 use crate::formula::Formula;
 use crate::math::quantiles;
-use crate::plan::{Outside, Plan, Planned, Producer};
+use crate::plan::{Outside, Plan, Planned, PlannedQuantity, Producer};
 use crate::quantity::shown::{self, Precision};
 use crate::quantity::written::Value;
 use crate::quantity::{Distribution, Unit};
-use crate::run::{CAP, Case, Decisive, Outcome, Settings, Statistics, chance_error, interval_ranks};
+use crate::run::{
+    CAP, Case, Decisive, FIRST_ROUND, Outcome, Settings, Statistics, chance_error, interval_ranks,
+};
 use crate::text::{Problem, Problems};
 
 /// What was asked for, for the record.
@@ -43,17 +45,18 @@ pub fn contradictions(
     let mut problems = Problems::new();
     for identity in &plan.identities {
         let Some(reading) = candidate.stated(&identity.quantity) else { continue };
-        let (stated, derived) =
-            (Values::of(identity.stated, case, outcome), Values::of(identity.derived, case, outcome));
-        let draws = outcome.record.draws.min(crate::run::FIRST_ROUND);
-        let mut ratios: Vec<f64> = (0..draws).map(|draw| derived.at(draw) / stated.at(draw)).collect();
+        let draws = outcome.record.draws.min(FIRST_ROUND);
+        let values = |node: usize| outcome.values(node).unwrap_or_else(|| vec![case.scalars[node]; draws]);
+        let (stated, derived) = (values(identity.stated), values(identity.derived));
+        let mut ratios: Vec<f64> =
+            derived.iter().zip(&stated).map(|(derived, stated)| derived / stated).collect();
         let ranks = interval_ranks(ratios.len());
         let found = quantiles::order_statistics_f64(&mut ratios, ranks);
         if found[2] < 1.0 / ROUNDING || found[0] > ROUNDING || found[1].is_nan() {
             let relation = &catalog.relations[identity.relation];
             let unit = &reading.unit;
-            let show = |values: &Values<'_>| {
-                let [low, median, high] = values.quantiles();
+            let show = |node: usize| {
+                let [low, median, high] = quantiles_at(node, case, outcome);
                 shown::in_unit(median, Precision::supported_by(median, low, high), unit)
             };
             problems.push(
@@ -62,8 +65,8 @@ pub fn contradictions(
                     format!(
                         "`{}` is stated as {}, but what else is stated makes it {}",
                         identity.quantity,
-                        show(&stated),
-                        show(&derived)
+                        show(identity.stated),
+                        show(identity.derived)
                     ),
                 )
                 .expected(format!(
@@ -78,38 +81,9 @@ pub fn contradictions(
     problems
 }
 
-/// The values of a node: one for all draws, or one for each of the first draws.
-enum Values<'a> {
-    One(f64),
-    Each(&'a [f64]),
-}
-
-impl<'a> Values<'a> {
-    fn of(node: usize, case: &Case, outcome: &'a Outcome) -> Self {
-        outcome.values(node).map_or(Values::One(case.scalars[node]), Values::Each)
-    }
-
-    fn at(&self, draw: usize) -> f64 {
-        match self {
-            Self::One(value) => *value,
-            Self::Each(values) => values[draw],
-        }
-    }
-
-    fn quantiles(&self) -> [f64; 3] {
-        match self {
-            Self::One(value) => [*value; 3],
-            Self::Each(values) => {
-                let mut copy = values.to_vec();
-                let ranks = interval_ranks(copy.len());
-                quantiles::order_statistics_f64(&mut copy, ranks)
-            }
-        }
-    }
-
-    fn median(&self) -> f64 {
-        self.quantiles()[1]
-    }
+/// 5 % quantile, median and 95 % quantile of a node.
+fn quantiles_at(node: usize, case: &Case, outcome: &Outcome) -> [f64; 3] {
+    outcome.quantiles(node).unwrap_or([case.scalars[node]; 3])
 }
 
 /// Builds the assessment.
@@ -134,7 +108,7 @@ pub fn assess(
         name: candidate.name.clone(),
         file: candidate.file.clone(),
         document: candidate.document,
-        attributes: candidate.attributes.clone(),
+        attributes: builder.attributes(),
         notes: candidate.notes.clone(),
         habitat: candidate.habitat.clone(),
         run: RunRecord {
@@ -167,6 +141,23 @@ struct Builder<'a> {
 }
 
 impl Builder<'_> {
+    /// The attributes that the candidate states, and those by whose defaults the limits listed here were chosen.
+    fn attributes(&self) -> BTreeMap<String, String> {
+        let planned = self.plan.constraints.iter().map(|planned| planned.constraint);
+        let outside = self.plan.outside.iter().map(|(at, _)| *at);
+        let constraints = planned.chain(outside).map(|at| &self.catalog.constraints[at].entry);
+        let relations = self.plan.constraints.iter().flat_map(|planned| &planned.support.relations);
+        let relations = relations.map(|at| &self.catalog.relations[*at].entry);
+        let asked: BTreeSet<&str> = constraints
+            .chain(relations)
+            .flat_map(|entry| entry.condition.clauses.iter().map(|clause| clause.attribute.as_str()))
+            .collect();
+        let told =
+            |name: &String| asked.contains(name.as_str()) || self.candidate.stated_attributes.contains(name);
+        let attributes = self.candidate.attributes.iter().filter(|(name, _)| told(name));
+        attributes.map(|(name, word)| (name.clone(), word.clone())).collect()
+    }
+
     fn constraints(&self) -> (Vec<ConstraintResult>, OverallResult) {
         let (pass_at, fail_at) = (self.asked.settings.pass_at, self.asked.settings.fail_at);
         let draws = self.outcome.record.draws;
@@ -240,6 +231,8 @@ impl Builder<'_> {
             required_says: constraint.required.says.clone(),
             available_formula: one_line(constraint.available.formula.text()),
             required_formula: one_line(constraint.required.formula.text()),
+            available_tex: constraint.available.formula.tex(&|name| self.symbol(name)),
+            required_tex: constraint.required.formula.tex(&|name| self.symbol(name)),
             parameters: self.parameters(&constraint.entry),
             meaning: constraint.entry.meaning.clone().unwrap_or_default(),
             exceptions: constraint.entry.exceptions.clone(),
@@ -250,6 +243,10 @@ impl Builder<'_> {
             sources: constraint.entry.sources.clone(),
             doubts: Vec::new(),
         }
+    }
+
+    fn symbol(&self, name: &str) -> Option<String> {
+        self.catalog.quantities.get(name)?.symbol.clone()
     }
 
     fn outside(&self, constraint: &Constraint, why: &Outside) -> ConstraintResult {
@@ -269,8 +266,8 @@ impl Builder<'_> {
         result
     }
 
-    fn values(&self, node: usize) -> Values<'_> {
-        Values::of(node, self.case, self.outcome)
+    fn quantiles(&self, node: usize) -> [f64; 3] {
+        quantiles_at(node, self.case, self.outcome)
     }
 
     fn assessed(&self, planned: &Planned, statistics: &Statistics, not_a_number_share: f64) -> Assessed {
@@ -278,8 +275,8 @@ impl Builder<'_> {
         Assessed {
             chance: statistics.holding as f64 / draws as f64,
             chance_se: chance_error(statistics.holding, draws),
-            available: self.values(planned.available).median(),
-            required: self.values(planned.required).median(),
+            available: self.quantiles(planned.available)[1],
+            required: self.quantiles(planned.required)[1],
             margin: Interval { median: statistics.median, low: statistics.low, high: statistics.high },
             not_a_number_share,
         }
@@ -288,7 +285,7 @@ impl Builder<'_> {
     fn speaks_of(&self, constraint: &Constraint) -> Option<SpeaksOf> {
         let name = constraint.speaks_of.as_ref()?.of(&self.candidate.attributes).ok()?;
         let planned = self.plan.quantities.iter().find(|quantity| quantity.name == *name)?;
-        let value = self.values(planned.node).median();
+        let value = self.quantity(planned).median;
         Some(SpeaksOf { quantity: name.clone(), value, unit: self.catalog.quantities[name].unit.clone() })
     }
 
@@ -307,10 +304,10 @@ impl Builder<'_> {
                     0.0
                 }
             };
-            let (mut outside, all): (Vec<f64>, usize) = match self.values(check.node) {
-                Values::One(value) => (vec![distance(value)], 1),
-                Values::Each(values) => (values.iter().map(|value| distance(*value)).collect(), values.len()),
-            };
+            let values =
+                self.outcome.values(check.node).unwrap_or_else(|| vec![self.case.scalars[check.node]]);
+            let all = values.len();
+            let mut outside: Vec<f64> = values.into_iter().map(distance).collect();
             outside.retain(|distance| *distance > 0.0);
             if !outside.is_empty() {
                 found.push(Extrapolation {
@@ -326,12 +323,8 @@ impl Builder<'_> {
     }
 
     fn quantities(&self) -> Vec<QuantityResult> {
-        let mut results: Vec<QuantityResult> = self
-            .plan
-            .quantities
-            .iter()
-            .map(|planned| self.quantity(&planned.name, planned.node, planned.producer))
-            .collect();
+        let mut results: Vec<QuantityResult> =
+            self.plan.quantities.iter().map(|planned| self.quantity(planned)).collect();
         // What nothing uses was stated all the same: the report echoes how it was read.
         for name in &self.plan.unused {
             if let Some(reading) = self.candidate.given.get(name) {
@@ -340,7 +333,7 @@ impl Builder<'_> {
         }
         for planned in &self.plan.figures {
             let figure = &self.catalog.figures[planned.figure];
-            let [low, median, high] = self.values(planned.node).quantiles();
+            let [low, median, high] = self.quantiles(planned.node);
             results.push(QuantityResult {
                 name: figure.entry.id.clone(),
                 about: figure.entry.title.clone(),
@@ -389,9 +382,11 @@ impl Builder<'_> {
         }
     }
 
-    fn quantity(&self, name: &str, node: usize, producer: Producer) -> QuantityResult {
+    fn quantity(&self, planned: &PlannedQuantity) -> QuantityResult {
+        let PlannedQuantity { name, node, producer } = planned;
+        let (node, producer) = (*node, *producer);
         let quantity = &self.catalog.quantities[name];
-        let free = self.plan.free.iter().position(|number| number.name == name);
+        let free = self.plan.free.iter().position(|number| number.name == *name);
         let stated = self.candidate.stated(name);
         let default = || {
             let default = quantity.default.as_ref()?;
@@ -404,7 +399,7 @@ impl Builder<'_> {
         let unit = stated.map_or_else(|| quantity.unit.clone(), |reading| reading.unit.clone());
         let [low, median, high] = match value {
             Some(Value::Unknown(distribution)) => quantiles_of(distribution),
-            _ => self.values(node).quantiles(),
+            _ => self.quantiles(node),
         };
         let (origin, distribution) = match producer {
             Producer::Given => (Origin::Given, value.map(|value| described(value, &unit))),
@@ -537,11 +532,13 @@ impl Builder<'_> {
             warnings.push(Warning {
                 code: "decided-by-choice",
                 message: format!(
-                    "{} hold only because `{}` may be {}; at the typical {} they would not",
+                    "{} {} only because `{}` may be {}; at the typical {} {} would not",
                     ids.join(", "),
+                    if ids.len() == 1 { "holds" } else { "hold" },
                     number.name,
                     show(setting.value),
-                    show(setting.range.typical)
+                    show(setting.range.typical),
+                    if ids.len() == 1 { "it" } else { "they" },
                 ),
             });
         }

@@ -96,6 +96,10 @@ pub struct ConstraintResult {
     pub available_formula: String,
     /// The formula of what is required, as evaluated.
     pub required_formula: String,
+    /// The same in TeX, in the symbols of the dictionary.
+    pub available_tex: String,
+    /// The same in TeX, in the symbols of the dictionary.
+    pub required_tex: String,
     /// The parameters that this entry alone brings along, in alphabetical order of name.
     pub parameters: Vec<ParameterResult>,
     /// What a failure means.

@@ -85,8 +85,8 @@ fn all_hold<'a, 'b: 'a>(record: &Record, entries: impl Iterator<Item = &'a Entry
     for entry in entries {
         let bits = record.holds(entry.at);
         match &mut all {
-            None => all = Some(bits.to_vec()),
-            Some(all) => all.iter_mut().zip(bits).for_each(|(all, bits)| *all &= bits),
+            None => all = Some(bits),
+            Some(all) => all.iter_mut().zip(&bits).for_each(|(all, bits)| *all &= bits),
         }
     }
     // Nothing to fail: everything holds.

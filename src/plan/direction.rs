@@ -169,14 +169,13 @@ fn unary_direction(function: Function, a: Direction, range: Bounds) -> Direction
     match function {
         Function::Exp
         | Function::Expm1
-        | Function::Sqrt
         | Function::Cbrt
-        | Function::Ln
-        | Function::Ln1p
-        | Function::Log10
         | Function::Atan
         | Function::Tanh
         | Function::Erf => a,
+        // Below their domain they are not a number, which holds nowhere: then no end is surely the best.
+        Function::Sqrt | Function::Ln | Function::Log10 if range.low >= 0.0 => a,
+        Function::Ln1p if range.low >= -1.0 => a,
         Function::Erfc => a.reversed(),
         Function::Abs => a.scaled(range),
         _ if a == Direction::Still => a,

@@ -10,6 +10,8 @@ mod power;
 mod resolve;
 mod schedule;
 mod support;
+#[cfg(test)]
+mod tests;
 
 use std::collections::{BTreeMap, BTreeSet};
 
@@ -207,6 +209,11 @@ impl Plan {
             })
             .collect();
         let used: BTreeSet<String> = compiler.quantities.keys().cloned().collect();
+        for name in beside(catalog, candidate, &chosen, &figures) {
+            if compiler.resolver.producer(&name).is_some() {
+                compiler.quantity(&name);
+            }
+        }
         let identities = identities(catalog, candidate, &mut compiler);
         if let Some(cycle) = compiler.cycle.take() {
             problems.push(
@@ -226,7 +233,6 @@ impl Plan {
 
         let quantities: Vec<PlannedQuantity> = nodes
             .iter()
-            .filter(|(name, _)| used.contains(*name))
             .filter_map(|(name, node)| {
                 Some(PlannedQuantity { name: name.clone(), node: *node, producer: resolver.producer(name)? })
             })
@@ -264,11 +270,13 @@ impl Plan {
         Ok(plan)
     }
 
-    /// Nodes whose values are kept: sides of constraints, quantities, figures, statements held against each other.
+    /// Nodes whose values are kept: sides of constraints, quantities that relations give, figures, what is held against
+    /// a range or another statement. Of stated numbers and defaults the distribution itself is known.
     #[must_use]
     pub fn outputs(&self) -> BTreeSet<NodeId> {
         let sides = self.constraints.iter().flat_map(|planned| [planned.available, planned.required]);
-        let quantities = self.quantities.iter().map(|quantity| quantity.node);
+        let given = |quantity: &&PlannedQuantity| matches!(quantity.producer, Producer::Relation(_));
+        let quantities = self.quantities.iter().filter(given).map(|quantity| quantity.node);
         let figures = self.figures.iter().map(|figure| figure.node);
         let ranges = self.ranges.iter().map(|range| range.node);
         let identities = self.identities.iter().flat_map(|identity| [identity.stated, identity.derived]);
@@ -314,8 +322,9 @@ fn standing_of<'a>(
     groups.extend(needed.into_iter().map(|name| [name.to_owned()].into()));
     let inputs: Vec<&str> =
         formulas.iter().flat_map(|formula| resolve::quantities_of(catalog, formula)).collect();
-    groups.extend(resolver.missing(&inputs));
+    groups.extend(resolver.missing(&entry.condition, &inputs));
     if !groups.is_empty() {
+        let groups = resolve::minimal(groups);
         let groups = groups.into_iter().map(|group| group.into_iter().collect()).collect();
         return Standing::Outside(Outside::Missing(groups));
     }
@@ -353,6 +362,36 @@ fn identities<'a>(
     found
 }
 
+/// Quantities that reports name beside the results: what limits speak of, and where laws were drawn from.
+fn beside(
+    catalog: &Catalog,
+    candidate: &Candidate,
+    chosen: &[(usize, Support)],
+    figures: &[PlannedFigure],
+) -> BTreeSet<String> {
+    let spoken_of = chosen.iter().filter_map(|(at, _)| {
+        let speaks_of = catalog.constraints[*at].speaks_of.as_ref()?;
+        speaks_of.of(&candidate.attributes).ok().cloned()
+    });
+    let ranges = entries_used(catalog, chosen, figures).flat_map(|entry| entry.valid_over.keys().cloned());
+    spoken_of.chain(ranges).collect()
+}
+
+/// The entries that the constraints and figures of a plan are computed from, each once.
+fn entries_used<'a>(
+    catalog: &'a Catalog,
+    chosen: &'a [(usize, Support)],
+    figures: &'a [PlannedFigure],
+) -> impl Iterator<Item = &'a crate::catalog::Entry> {
+    let relations: BTreeSet<usize> =
+        chosen.iter().flat_map(|(_, support)| support.relations.iter().copied()).collect();
+    chosen
+        .iter()
+        .map(|(at, _)| &catalog.constraints[*at].entry)
+        .chain(relations.into_iter().map(|at| &catalog.relations[at].entry))
+        .chain(figures.iter().map(|figure| &catalog.figures[figure.figure].entry))
+}
+
 /// Puts free numbers in order of name; gives the new position of each old one.
 fn sort_free(free: &mut [FreeNumber]) -> Vec<usize> {
     let mut by_name: Vec<(String, usize)> =
@@ -372,14 +411,7 @@ fn range_checks(
     figures: &[PlannedFigure],
     nodes: &BTreeMap<String, NodeId>,
 ) -> Vec<RangeCheck> {
-    let relations: BTreeSet<usize> =
-        chosen.iter().flat_map(|(_, support)| support.relations.iter().copied()).collect();
-    let entries = chosen
-        .iter()
-        .map(|(at, _)| &catalog.constraints[*at].entry)
-        .chain(relations.iter().map(|at| &catalog.relations[*at].entry))
-        .chain(figures.iter().map(|figure| &catalog.figures[figure.figure].entry));
-    entries
+    entries_used(catalog, chosen, figures)
         .flat_map(|entry| entry.valid_over.iter().map(move |(quantity, range)| (entry, quantity, range)))
         .filter_map(|(entry, quantity, (low, high))| {
             Some(RangeCheck {

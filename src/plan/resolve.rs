@@ -5,7 +5,7 @@
 
 use std::collections::{BTreeMap, BTreeSet};
 
-use crate::catalog::{ByAttribute, Catalog, Condition, Entry, Match, Relation};
+use crate::catalog::{ByAttribute, Catalog, Condition, Entry, Match, Relation, Words};
 use crate::formula::Formula;
 
 /// Where a quantity comes from.
@@ -50,6 +50,7 @@ pub(super) struct Resolver<'a> {
     known: Vec<bool>,
     producers: BTreeMap<usize, Option<Producer>>,
     obtainable: Vec<bool>,
+    words: Words,
 }
 
 #[derive(Debug)]
@@ -121,6 +122,7 @@ impl<'a> Resolver<'a> {
             known,
             producers: BTreeMap::new(),
             obtainable: Vec::new(),
+            words: catalog.words(),
         };
         resolver.obtainable = resolver.fixed_point(None);
         resolver
@@ -194,17 +196,23 @@ impl<'a> Resolver<'a> {
         Self::default_of(self.catalog, self.stated.attributes, name).then_some(Producer::Default)
     }
 
-    /// What to state so that all these quantities are obtainable: one of each group.
+    /// What to state so that all these quantities are obtainable for an entry with this condition: one of each group.
     #[must_use]
-    pub(super) fn missing(&self, names: &[&str]) -> Missing {
+    pub(super) fn missing(&self, condition: &'a Condition, names: &[&str]) -> Missing {
         let mut groups = Missing::new();
         for name in names {
-            groups.extend(self.missing_for(name, &mut BTreeSet::new()));
+            groups.extend(self.missing_for(name, &mut BTreeSet::new(), &mut vec![condition]));
         }
-        minimal(groups)
+        groups
     }
 
-    fn missing_for(&self, name: &str, above: &mut BTreeSet<String>) -> Missing {
+    /// `above` are the quantities on the way here, `along` the conditions of the entries on it.
+    fn missing_for(
+        &self,
+        name: &str,
+        above: &mut BTreeSet<String>,
+        along: &mut Vec<&'a Condition>,
+    ) -> Missing {
         if self.is_obtainable(name) {
             return Missing::new();
         }
@@ -214,8 +222,13 @@ impl<'a> Resolver<'a> {
         }
         let mut groups = itself;
         for relation in self.catalog.relations.iter().filter(|relation| relation.gives == name) {
+            let condition = &relation.entry.condition;
+            // One word must do for every entry on the way: a sphere has no length.
+            if !along.iter().all(|other| condition.overlaps(other, &self.words)) {
+                continue;
+            }
             let mut needs = Missing::new();
-            match relation.entry.condition.matches(self.stated.attributes) {
+            match condition.matches(self.stated.attributes) {
                 Match::No(_) => continue,
                 Match::Yes => {}
                 Match::Unknown(attributes) => needs.extend(attributes.into_iter().map(|name| [name].into())),
@@ -227,9 +240,11 @@ impl<'a> Resolver<'a> {
             if inputs.iter().any(|input| above.contains(*input)) {
                 continue;
             }
+            along.push(condition);
             for input in inputs {
-                needs.extend(self.missing_for(input, above));
+                needs.extend(self.missing_for(input, above, along));
             }
+            along.pop();
             groups = either(&groups, &minimal(needs));
         }
         above.remove(name);
@@ -247,7 +262,7 @@ fn either(one: &Missing, other: &Missing) -> Missing {
 }
 
 /// Without groups that another one implies.
-fn minimal(groups: Missing) -> Missing {
+pub(super) fn minimal(groups: Missing) -> Missing {
     groups
         .iter()
         .filter(|group| !groups.iter().any(|other| other != *group && other.is_subset(group)))

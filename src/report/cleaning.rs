@@ -47,6 +47,8 @@ fn constraint(result: &mut ConstraintResult) {
         &mut result.required_says,
         &mut result.available_formula,
         &mut result.required_formula,
+        &mut result.available_tex,
+        &mut result.required_tex,
         &mut result.meaning,
     ]);
     each(result.exceptions.as_mut_slice());
@@ -62,6 +64,9 @@ fn constraint(result: &mut ConstraintResult) {
         each(&mut [&mut beyond.relation, &mut beyond.quantity]);
     }
     result.parameters.iter_mut().for_each(parameter);
+    for doubt in &mut result.doubts {
+        each(&mut [&mut doubt.what, &mut doubt.standing]);
+    }
 }
 
 fn quantity(result: &mut QuantityResult) {

@@ -7,9 +7,10 @@ use crate::catalog::{
     ByAttribute, Catalog, Clause, Condition, Constraint, Entry, Figure, Of, Parameter, Provenance, Quantity,
     Relation, RelationKind,
 };
+use crate::formula::Formula;
 use crate::quantity::shown::{self, Precision};
 use crate::quantity::written::Value;
-use crate::quantity::{Bounds, Unit};
+use crate::quantity::{Bounds, Dimension, Unit};
 
 /// Whether an entry concerns a body plan; every entry concerns all when none is asked for.
 fn concerns(catalog: &Catalog, entry: &Entry, body_plan: Option<&str>) -> bool {
@@ -284,6 +285,28 @@ impl Page {
         }
     }
 
+    /// The points of an entry's curves, in the units of what its formulas name and of what they give.
+    fn curves(&mut self, catalog: &Catalog, entry: &Entry, formulas: &[&Formula], gives: Option<&Unit>) {
+        let named = formulas.iter().flat_map(|formula| formula.names());
+        let named: Vec<&Unit> =
+            named.filter_map(|name| catalog.quantities.get(name)).map(|quantity| &quantity.unit).collect();
+        let shown = |si: f64, dimension: Dimension| {
+            let mut units = gives.into_iter().chain(named.iter().copied());
+            units
+                .find(|unit| unit.dimension() == dimension)
+                .map_or_else(|| si.to_string(), |unit| exact(si, unit))
+        };
+        for (name, curve) in &entry.curves {
+            let form = curve.form();
+            let points: Vec<String> = curve
+                .points()
+                .iter()
+                .map(|(at, value)| format!("{} at {}", shown(*value, form.value), shown(*at, form.argument)))
+                .collect();
+            self.field("Curve", &format!("{name}: {}", points.join(", ")));
+        }
+    }
+
     fn entry(&mut self, catalog: &Catalog, entry: &Entry) {
         self.field("Title", &entry.title);
         self.field("Family", &entry.family);
@@ -354,6 +377,8 @@ fn show_constraint(page: &mut Page, catalog: &Catalog, constraint: &Constraint) 
     );
     page.field("Required", &format!("{} = {}", constraint.required.says, constraint.required.formula.text()));
     page.field("Margin", "log10(available / required), in dex; holds where it is 0 or more");
+    let formulas = [&constraint.available.formula, &constraint.required.formula];
+    page.curves(catalog, &constraint.entry, &formulas, Some(&constraint.unit));
     page.entry(catalog, &constraint.entry);
 }
 
@@ -369,12 +394,15 @@ fn show_relation(page: &mut Page, catalog: &Catalog, relation: &Relation) {
         let values: Vec<String> = scatter.values().into_iter().map(|dex| format!("{dex} dex")).collect();
         page.field("Scatter", &format!("{}: one factor per draw and organism", values.join(" or ")));
     }
+    let unit = catalog.quantities.get(&relation.gives).map(|quantity| &quantity.unit);
+    page.curves(catalog, &relation.entry, &[&relation.formula], unit);
     page.entry(catalog, &relation.entry);
 }
 
 fn show_figure(page: &mut Page, catalog: &Catalog, figure: &Figure) {
     page.field("Figure", &figure.entry.id);
     page.field("Is", &format!("{} ({})", figure.formula.text(), figure.unit.text()));
+    page.curves(catalog, &figure.entry, &[&figure.formula], Some(&figure.unit));
     page.entry(catalog, &figure.entry);
 }
 

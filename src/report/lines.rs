@@ -66,7 +66,7 @@ fn limit(a: &Assessment, result: &ConstraintResult, numbers: &Assessed) -> Strin
     if let Some(speaks_of) = words::speaks_of(a, result) {
         text += &format!("; speaks of {speaks_of}");
     }
-    for (_, reservation) in words::reservations(a, result) {
+    for (_, reservation) in words::reservations(result) {
         text += &format!("; {reservation}");
     }
     if result.verdict != Verdict::Pass {

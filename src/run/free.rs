@@ -4,9 +4,12 @@
 //! holds, the smallest, the next smallest, ... median margin over the constraints that a free number touches, nearness
 //! to the typical values. A number that every constraint pulls the same way goes to that end without a search. The
 //! others are searched on the first draws of the same streams: 17 points per number on its scale, in passes over the
-//! numbers in order of name and over the ends of coupled pairs, until nothing changes.
+//! numbers in order of name and over the ends of coupled pairs, until nothing changes. Where two limits pull against each
+//! other, moving one number alone may make one of them worse: while something does not hold, slanting steps of coupled
+//! pairs are tried too, for the chances alone, since verdicts hang on them.
 
 use std::cmp::Ordering;
+use std::collections::BTreeMap;
 
 use crate::catalog::Basis;
 use crate::math::kernels::{self, Operand};
@@ -15,12 +18,29 @@ use crate::math::streams::Stream;
 use crate::plan::{Direction, Level, NodeId, Plan, operands};
 use crate::quantity::FreeRange;
 
-use super::case::Case;
+use super::case::{Case, Setting};
 use super::machine::{BLOCK, compute};
-use super::margins::margins;
+use super::margins::{holding, ratios};
 
 /// Points tried per number.
 const POINTS: u32 = 17;
+/// Slanting steps of a pair, in distances between neighbouring points.
+const SLANTS: [(f64, f64); 12] = [
+    (1.0, 1.0),
+    (1.0, -1.0),
+    (-1.0, 1.0),
+    (-1.0, -1.0),
+    (1.0, 2.0),
+    (1.0, -2.0),
+    (-1.0, 2.0),
+    (-1.0, -2.0),
+    (2.0, 1.0),
+    (2.0, -1.0),
+    (-2.0, 1.0),
+    (-2.0, -1.0),
+];
+/// How far slanting steps go.
+const STRIDES: [f64; 3] = [4.0, 1.0, 0.25];
 /// Passes over the numbers at most.
 const PASSES: usize = 8;
 /// Margins closer than this (dex) count as equal, so that rounding decides nothing.
@@ -35,8 +55,9 @@ pub struct Decisive {
     pub constraints: Vec<usize>,
 }
 
-/// Sets the free numbers of a case.
-pub fn choose(plan: &Plan, case: &mut Case, streams: &[Stream]) {
+/// Sets the free numbers of a case, and lists those that decide: each is then put at its typical value alone, and the
+/// constraints that no longer hold in `share` of the draws, but do at the chosen value, are named.
+pub fn choose(plan: &Plan, case: &mut Case, streams: &[Stream], share: f64) -> Vec<Decisive> {
     let mut searched = Vec::new();
     for free in 0..plan.free.len() {
         let pull =
@@ -52,45 +73,20 @@ pub fn choose(plan: &Plan, case: &mut Case, streams: &[Stream]) {
     for id in 0..plan.graph.nodes.len() {
         case.compute(plan, id);
     }
-    if !searched.is_empty() {
-        Search::new(plan, case, streams).run(&searched);
-    }
-}
-
-/// The free numbers that decide: each is put at its typical value alone, and the constraints that then no longer hold
-/// in `share` of the draws, but do at the chosen value, are listed.
-#[must_use]
-pub fn decisive(plan: &Plan, case: &Case, streams: &[Stream], share: f64) -> Vec<Decisive> {
-    let moved: Vec<usize> = (0..plan.free.len())
-        .filter(|free| case.free[*free].value != case.free[*free].range.typical)
-        .filter(|free| plan.constraints.iter().any(|planned| planned.pulls[*free] != Direction::Still))
-        .collect();
-    if moved.is_empty() {
+    let atypical = case.free.iter().any(|free| free.value != free.range.typical);
+    if searched.is_empty() && !atypical {
         return Vec::new();
     }
-    let mut copy = case.clone();
-    let mut search = Search::new(plan, &mut copy, streams);
-    let enough = |bits: &[u64]| ones(bits) as f64 >= share * BLOCK as f64;
-    let before: Vec<bool> = search.holds.iter().map(|bits| enough(bits)).collect();
-    let mut found = Vec::new();
-    for free in moved {
-        let chosen = search.case.free[free].value;
-        search.set(&[(free, search.case.free[free].range.typical)]);
-        let constraints: Vec<usize> =
-            (0..plan.constraints.len()).filter(|at| before[*at] && !enough(&search.holds[*at])).collect();
-        search.set(&[(free, chosen)]);
-        if !constraints.is_empty() {
-            found.push(Decisive { free, constraints });
-        }
-    }
-    found
+    let mut search = Search::new(plan, case, streams);
+    search.run(&searched);
+    search.decisive(share)
 }
 
 /// What is maximised.
 #[derive(Clone, Debug)]
 struct Score {
-    strong: u32,
-    all: u32,
+    /// Draws in which everything stronger than empirical holds, and in which everything does.
+    chances: (u32, u32),
     /// Median margins of the constraints that a free number touches, ascending.
     medians: Vec<f64>,
     /// Sum of distances from the typical values, each as a share of its range.
@@ -114,13 +110,17 @@ impl Score {
                 other.distance.total_cmp(&self.distance)
             }
         };
-        self.strong
-            .cmp(&other.strong)
-            .then_with(|| self.all.cmp(&other.all))
-            .then_with(medians)
-            .then_with(distance)
-            == Ordering::Greater
+        self.chances.cmp(&other.chances).then_with(medians).then_with(distance) == Ordering::Greater
     }
+}
+
+/// What makes one setting better than another.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Compare {
+    /// Chances, then margins, then nearness to the typical values.
+    Everything,
+    /// Chances alone.
+    Chances,
 }
 
 /// All columns of one block, so that only what depends on a changed number is computed again.
@@ -130,11 +130,10 @@ struct Search<'a> {
     streams: &'a [Stream],
     columns: Vec<Vec<f64>>,
     holds: Vec<Vec<u64>>,
-    medians: Vec<f64>,
+    medians: Vec<Option<f64>>,
     /// Constraints that some free number touches.
     touched: Vec<usize>,
     scratch: Vec<f64>,
-    margins: Vec<f64>,
 }
 
 impl<'a> Search<'a> {
@@ -161,10 +160,9 @@ impl<'a> Search<'a> {
             streams,
             columns: vec![Vec::new(); nodes],
             holds: vec![vec![0; BLOCK / 64]; plan.constraints.len()],
-            medians: vec![f64::NAN; plan.constraints.len()],
+            medians: vec![None; plan.constraints.len()],
             touched,
             scratch: vec![0.0; BLOCK],
-            margins: vec![0.0; BLOCK],
         };
         for (id, needed) in needed.into_iter().enumerate() {
             if needed && plan.graph.nodes[id].level.is_column() {
@@ -192,19 +190,27 @@ impl<'a> Search<'a> {
         self.columns[id] = out;
     }
 
+    /// Whether a constraint holds, draw by draw; its median is then out of date.
     fn constraint(&mut self, at: usize) {
         let planned = &self.plan.constraints[at];
-        let (mut scratch, mut out) = (std::mem::take(&mut self.scratch), std::mem::take(&mut self.margins));
         let mut holds = std::mem::take(&mut self.holds[at]);
-        margins(
-            self.operand(planned.available),
-            self.operand(planned.required),
-            &mut scratch,
-            &mut out,
-            &mut holds,
-        );
-        [self.medians[at]] = quantiles::order_statistics_f64(&mut out, [quantiles::rank_median(BLOCK)]);
-        (self.scratch, self.margins, self.holds[at]) = (scratch, out, holds);
+        holding(self.operand(planned.available), self.operand(planned.required), &mut holds, BLOCK);
+        (self.holds[at], self.medians[at]) = (holds, None);
+    }
+
+    /// The median margin of a constraint, dex; not a number is the worst a margin can be.
+    fn median(&mut self, at: usize) -> f64 {
+        if let Some(median) = self.medians[at] {
+            return median;
+        }
+        let planned = &self.plan.constraints[at];
+        let mut ratio = std::mem::take(&mut self.scratch);
+        ratios(self.operand(planned.available), self.operand(planned.required), &mut ratio);
+        let [middle] = quantiles::order_statistics_f64(&mut ratio, [quantiles::rank_median(BLOCK)]);
+        self.scratch = ratio;
+        let median = if middle.is_nan() { f64::NEG_INFINITY } else { kernels::log10(middle) };
+        self.medians[at] = Some(median);
+        median
     }
 
     /// Gives free numbers new values and computes what depends on them.
@@ -234,58 +240,114 @@ impl<'a> Search<'a> {
         }
     }
 
-    fn score(&self) -> Score {
-        let joint = |strong: bool| {
-            let mut all = vec![u64::MAX; BLOCK / 64];
-            for (planned, bits) in self.plan.constraints.iter().zip(&self.holds) {
-                if !strong || planned.basis < Basis::Empirical {
-                    for (all, bits) in all.iter_mut().zip(bits) {
-                        *all &= bits;
-                    }
+    /// The draws in which everything stronger than empirical holds, and in which everything does.
+    fn chances(&self) -> (u32, u32) {
+        let mut strong = [u64::MAX; BLOCK / 64];
+        let mut all = [u64::MAX; BLOCK / 64];
+        for (planned, bits) in self.plan.constraints.iter().zip(&self.holds) {
+            let is_strong = planned.basis < Basis::Empirical;
+            for ((strong, all), bits) in strong.iter_mut().zip(&mut all).zip(bits) {
+                *all &= bits;
+                if is_strong {
+                    *strong &= bits;
                 }
             }
-            ones(&all)
-        };
-        let mut medians: Vec<f64> = self.touched.iter().map(|at| self.medians[*at]).collect();
-        // Not a number is the worst a margin can be.
-        medians.iter_mut().filter(|median| median.is_nan()).for_each(|median| *median = f64::NEG_INFINITY);
+        }
+        (ones(&strong), ones(&all))
+    }
+
+    fn score(&mut self) -> Score {
+        let chances = self.chances();
+        let mut medians: Vec<f64> = self.touched.clone().into_iter().map(|at| self.median(at)).collect();
         medians.sort_by(f64::total_cmp);
         let distance = self.case.free.iter().map(|free| {
             let at = |value| position(&free.range, value);
             (at(free.value) - at(free.range.typical)).abs()
         });
-        Score { strong: joint(true), all: joint(false), medians, distance: distance.sum() }
+        Score { chances, medians, distance: distance.sum() }
     }
 
     fn run(&mut self, searched: &[usize]) {
         let mut best = self.score();
+        // How often anything changed, and of each number or pair how often it had when it was last tried: trying it
+        // again before another change would find nothing new.
+        let mut changes = 0_u32;
+        let mut tried: BTreeMap<(usize, usize), u32> = BTreeMap::new();
         for _ in 0..PASSES {
-            let mut changed = false;
-            for free in searched {
-                let range = self.case.free[*free].range;
-                let trials: Vec<Vec<(usize, f64)>> =
-                    (0..POINTS).map(|point| vec![(*free, point_of(&range, point))]).collect();
-                changed |= self.try_all(&trials, &mut best);
-            }
-            for (position, one) in searched.iter().enumerate() {
-                for other in &searched[position + 1..] {
-                    if self.coupled(*one, *other) {
-                        let (a, b) = (self.case.free[*one].range, self.case.free[*other].range);
-                        let ends = [(a.low, b.low), (a.low, b.high), (a.high, b.low), (a.high, b.high)];
-                        let trials: Vec<Vec<(usize, f64)>> =
-                            ends.iter().map(|(a, b)| vec![(*one, *a), (*other, *b)]).collect();
-                        changed |= self.try_all(&trials, &mut best);
+            let before = changes;
+            let alone = searched.iter().map(|free| (*free, *free));
+            let pairs = searched
+                .iter()
+                .enumerate()
+                .flat_map(|(position, one)| searched[position + 1..].iter().map(move |other| (*one, *other)));
+            for (one, other) in alone.chain(pairs) {
+                if tried.get(&(one, other)) == Some(&changes) || !self.coupled(one, other) {
+                    continue;
+                }
+                let trials = self.trials(one, other);
+                changes += u32::from(self.try_all(&trials, &mut best, Compare::Everything));
+                for stride in STRIDES {
+                    let all_hold = best.chances.1 as usize == BLOCK;
+                    if one != other && !all_hold {
+                        let trials = self.slants(one, other, stride);
+                        changes += u32::from(self.try_all(&trials, &mut best, Compare::Chances));
                     }
                 }
+                tried.insert((one, other), changes);
             }
-            if !changed {
+            if changes == before {
                 break;
             }
         }
     }
 
+    /// The points of one number, or both ends of a pair.
+    fn trials(&self, one: usize, other: usize) -> Vec<Vec<(usize, f64)>> {
+        let (a, b) = (self.case.free[one].range, self.case.free[other].range);
+        if one == other {
+            let place = |point: u32| f64::from(point) / f64::from(POINTS - 1);
+            return (0..POINTS).map(|point| vec![(one, value_at(&a, place(point)))]).collect();
+        }
+        let ends = [(a.low, b.low), (a.low, b.high), (a.high, b.low), (a.high, b.high)];
+        ends.iter().map(|(a, b)| vec![(one, *a), (other, *b)]).collect()
+    }
+
+    /// Both numbers of a pair, moved from where they stand.
+    fn slants(&self, one: usize, other: usize, stride: f64) -> Vec<Vec<(usize, f64)>> {
+        let moved = |free: usize, steps: f64| {
+            let Setting { range, value } = &self.case.free[free];
+            (free, value_at(range, position(range, *value) + stride * steps / f64::from(POINTS - 1)))
+        };
+        SLANTS.iter().map(|(a, b)| vec![moved(one, *a), moved(other, *b)]).collect()
+    }
+
+    fn decisive(&mut self, share: f64) -> Vec<Decisive> {
+        let enough = |bits: &[u64]| f64::from(ones(bits)) >= share * BLOCK as f64;
+        let before: Vec<bool> = self.holds.iter().map(|bits| enough(bits)).collect();
+        let mut found = Vec::new();
+        let mut back: Option<(usize, f64)> = None;
+        for free in 0..self.plan.free.len() {
+            let setting = &self.case.free[free];
+            let touches = self.plan.constraints.iter().any(|planned| planned.pulls[free] != Direction::Still);
+            if setting.value == setting.range.typical || !touches {
+                continue;
+            }
+            let now = (free, setting.range.typical);
+            let chosen = (free, setting.value);
+            self.set(&back.into_iter().chain([now]).collect::<Vec<_>>());
+            back = Some(chosen);
+            let constraints: Vec<usize> =
+                (0..before.len()).filter(|at| before[*at] && !enough(&self.holds[*at])).collect();
+            if !constraints.is_empty() {
+                found.push(Decisive { free, constraints });
+            }
+        }
+        self.set(&back.into_iter().collect::<Vec<_>>());
+        found
+    }
+
     /// Tries settings of the same numbers and leaves the best of them, or what stood before.
-    fn try_all(&mut self, trials: &[Vec<(usize, f64)>], best: &mut Score) -> bool {
+    fn try_all(&mut self, trials: &[Vec<(usize, f64)>], best: &mut Score, compare: Compare) -> bool {
         let Some(first) = trials.first() else { return false };
         let mut keep: Vec<(usize, f64)> =
             first.iter().map(|(free, _)| (*free, self.case.free[*free].value)).collect();
@@ -295,6 +357,11 @@ impl<'a> Search<'a> {
                 continue;
             }
             self.set(trial);
+            // Medians are compared only between settings that hold equally often.
+            let ordering = self.chances().cmp(&best.chances);
+            if ordering == Ordering::Less || (ordering == Ordering::Equal && compare == Compare::Chances) {
+                continue;
+            }
             let score = self.score();
             if score.better(best) {
                 *best = score;
@@ -330,15 +397,15 @@ fn position(range: &FreeRange, value: f64) -> f64 {
     }
 }
 
-fn point_of(range: &FreeRange, point: u32) -> f64 {
-    let share = f64::from(point) / f64::from(POINTS - 1);
-    if point == 0 {
+/// The value at a place from 0 to 1 on the range's scale; the nearest end beyond.
+fn value_at(range: &FreeRange, place: f64) -> f64 {
+    if place <= 0.0 {
         range.low
-    } else if point == POINTS - 1 {
+    } else if place >= 1.0 {
         range.high
     } else if range.logarithmic {
-        range.low * kernels::exp(share * kernels::ln(range.high / range.low))
+        range.low * kernels::exp(place * kernels::ln(range.high / range.low))
     } else {
-        range.low + share * (range.high - range.low)
+        range.low + place * (range.high - range.low)
     }
 }

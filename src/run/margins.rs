@@ -1,6 +1,52 @@
 //! Margins and whether they hold.
 
-use crate::math::kernels::{self, Operand};
+use crate::math::kernels::{self, Arithmetic, Operand};
+
+/// Whether available >= required, one bit a draw, by the same rules as [`margins`].
+pub(super) fn holding(available: Operand<'_>, required: Operand<'_>, holds: &mut [u64], draws: usize) {
+    // A loop for each shape: deciding inside the loop would keep it from becoming vectors.
+    match (available, required) {
+        (Operand::Column(has), Operand::Column(needs)) => bits(holds, draws, |at| has[at], |at| needs[at]),
+        (Operand::Column(has), Operand::Scalar(needs)) => bits(holds, draws, |at| has[at], |_| needs),
+        (Operand::Scalar(has), Operand::Column(needs)) => bits(holds, draws, |_| has, |at| needs[at]),
+        (Operand::Scalar(has), Operand::Scalar(needs)) => bits(holds, draws, |_| has, |_| needs),
+    }
+}
+
+#[inline(always)]
+fn bits(holds: &mut [u64], draws: usize, has: impl Fn(usize) -> f64, needs: impl Fn(usize) -> f64) {
+    for (word, holds) in holds.iter_mut().enumerate() {
+        let first = word * 64;
+        *holds = 0;
+        for bit in 0..64.min(draws - first) {
+            let (has, needs) = (has(first + bit), needs(first + bit));
+            // Nothing that is not positive is enough, anything positive is enough for nothing, and infinite against
+            // infinite is no answer.
+            let enough = (has > 0.0)
+                & ((has >= needs) | (needs <= 0.0))
+                & ((has < f64::INFINITY) | (needs < f64::INFINITY));
+            *holds |= u64::from(enough) << bit;
+        }
+    }
+}
+
+/// available / required, ordered as margins are: their order statistics are those of the margins before the logarithm.
+pub(super) fn ratios(available: Operand<'_>, required: Operand<'_>, out: &mut [f64]) {
+    kernels::binary_column(Arithmetic::Divide, out, available, required);
+    for (at, ratio) in out.iter_mut().enumerate() {
+        let (has, needs) = (row(available, at), row(required, at));
+        if !(has > 0.0 && needs > 0.0) {
+            *ratio = kernels::pow(10.0, special(has, needs));
+        }
+    }
+}
+
+fn row(operand: Operand<'_>, at: usize) -> f64 {
+    match operand {
+        Operand::Column(column) => column[at],
+        Operand::Scalar(value) => value,
+    }
+}
 
 /// The margins of one block: log10(available / required) in dex, and whether available >= required.
 ///
@@ -13,27 +59,19 @@ pub(super) fn margins(
     out: &mut [f64],
     holds: &mut [u64],
 ) {
-    let has = |at: usize| match available {
-        Operand::Column(column) => column[at],
-        Operand::Scalar(value) => value,
-    };
-    let needs = |at: usize| match required {
-        Operand::Column(column) => column[at],
-        Operand::Scalar(value) => value,
-    };
-    for (at, ratio) in scratch.iter_mut().enumerate() {
-        *ratio = has(at) / needs(at);
-    }
+    let draws = out.len();
+    holding(available, required, holds, draws);
+    kernels::binary_column(Arithmetic::Divide, scratch, available, required);
     kernels::log10_column(out, scratch);
-    holds.fill(0);
+    // The ratio of two positive finite numbers is mostly an ordinary number; what is not is settled one by one.
+    let plain = |at: usize| row(available, at) > 0.0 && row(required, at) > 0.0 && scratch[at].is_normal();
+    if (0..draws).fold(true, |all, at| all & plain(at)) {
+        return;
+    }
     for (at, margin) in out.iter_mut().enumerate() {
-        let (has, needs, ratio) = (has(at), needs(at), scratch[at]);
-        // The ratio of two positive finite numbers may still overflow or vanish.
-        if !(has > 0.0 && needs > 0.0 && ratio.is_normal()) {
-            *margin = special(has, needs);
+        if !plain(at) {
+            *margin = special(row(available, at), row(required, at));
         }
-        let holding = if has > 0.0 && needs > 0.0 { has >= needs } else { *margin == f64::INFINITY };
-        holds[at / 64] |= u64::from(holding) << (at % 64);
     }
 }
 

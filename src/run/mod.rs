@@ -10,9 +10,11 @@ mod machine;
 mod margins;
 mod record;
 mod rounds;
+#[cfg(test)]
+mod tests;
 
 pub use case::{Case, Setting};
-pub use free::{Decisive, choose, decisive};
+pub use free::{Decisive, choose};
 pub use machine::{BLOCK, streams};
 pub use record::Record;
 pub use rounds::{CAP, FIRST_ROUND, Outcome, Settings, Statistics, chance_error, interval_ranks, run};

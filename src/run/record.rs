@@ -1,79 +1,91 @@
 //! What is kept of the draws: margins of every draw, other values of the first ones.
 
+use super::machine::BLOCK;
 use crate::math::quantiles;
 
-/// One round of draws of one or more cases, block by block.
+/// One block of draws of one case.
 #[derive(Debug)]
-pub(super) struct Segment {
+pub(super) struct Part {
     /// Draws in it.
     pub(super) draws: usize,
-    /// `[block][case][constraint][draw]`, margins in dex.
+    /// `[constraint][draw]`, margins in dex.
     pub(super) margins: Vec<f32>,
-    /// `[block][case][constraint][word]`, one bit a draw.
+    /// `[constraint][word]`, one bit a draw.
     pub(super) holds: Vec<u64>,
+    /// `[kept node][draw]`; empty beyond the first draws. At double precision: a rate may span hundreds of decades.
+    pub(super) kept: Vec<f64>,
 }
 
-/// The draws of one case.
+impl Part {
+    /// A part with room for so many constraints and kept nodes.
+    pub(super) fn new(draws: usize, constraints: usize, kept: usize) -> Self {
+        Self {
+            draws,
+            margins: vec![0.0; constraints * draws],
+            holds: vec![0; constraints * draws.div_ceil(64)],
+            kept: vec![0.0; kept * draws],
+        }
+    }
+}
+
+/// The draws of one case. Only its last block may be short, so that words of bits line up.
 #[derive(Debug, Default)]
 pub struct Record {
     /// Draws made.
     pub draws: usize,
-    /// Of each constraint, its margins in the order of draws.
-    margins: Vec<Vec<f32>>,
-    /// Of each constraint, one bit a draw, 64 to a word.
-    holds: Vec<Vec<u64>>,
-    /// Of each kept node, its values in the first draws.
-    pub(super) kept: Vec<Vec<f64>>,
+    parts: Vec<Part>,
 }
 
 impl Record {
-    /// An empty record for so many constraints and kept nodes.
-    #[must_use]
-    pub(super) fn new(constraints: usize, kept: usize) -> Self {
-        Self {
-            draws: 0,
-            margins: vec![Vec::new(); constraints],
-            holds: vec![Vec::new(); constraints],
-            kept: vec![Vec::new(); kept],
-        }
-    }
-
-    pub(super) fn extend(&mut self, segment: &Segment, case: usize, cases: usize, block: usize) {
-        let constraints = self.margins.len();
-        let words = block / 64;
-        for (constraint, (margins, holds)) in self.margins.iter_mut().zip(&mut self.holds).enumerate() {
-            margins.reserve_exact(segment.draws);
-            for (number, start) in (0..segment.draws).step_by(block).enumerate() {
-                let len = block.min(segment.draws - start);
-                let slot = (number * cases + case) * constraints + constraint;
-                margins.extend_from_slice(&segment.margins[slot * block..slot * block + len]);
-                holds.extend_from_slice(&segment.holds[slot * words..slot * words + len.div_ceil(64)]);
-            }
-        }
-        self.draws += segment.draws;
+    pub(super) fn push(&mut self, part: Part) {
+        self.draws += part.draws;
+        self.parts.push(part);
     }
 
     /// The bits of a constraint: whether it holds, draw by draw.
     #[must_use]
-    pub fn holds(&self, constraint: usize) -> &[u64] {
-        &self.holds[constraint]
+    pub fn holds(&self, constraint: usize) -> Vec<u64> {
+        let mut bits = Vec::with_capacity(self.draws.div_ceil(64));
+        for part in &self.parts {
+            let words = part.draws.div_ceil(64);
+            bits.extend_from_slice(&part.holds[constraint * words..][..words]);
+        }
+        bits
     }
 
     /// How many draws of a constraint hold.
     #[must_use]
     pub fn holding(&self, constraint: usize) -> u64 {
-        self.holds[constraint].iter().map(|word| u64::from(word.count_ones())).sum()
+        self.holds(constraint).into_iter().map(|word| u64::from(word.count_ones())).sum()
     }
 
-    /// How many margins of a constraint are not a number.
+    /// The margins of a constraint in the order of draws, dex.
     #[must_use]
-    pub fn not_a_number(&self, constraint: usize) -> usize {
-        self.margins[constraint].iter().filter(|margin| margin.is_nan()).count()
+    pub fn margins(&self, constraint: usize) -> Vec<f32> {
+        let mut margins = Vec::with_capacity(self.draws);
+        for part in &self.parts {
+            margins.extend_from_slice(&part.margins[constraint * part.draws..][..part.draws]);
+        }
+        margins
     }
 
-    /// Order statistics of a constraint's margins at these ranks (0 is the lowest); not a number ranks lowest.
+    /// The values of a kept node in the first draws.
     #[must_use]
-    pub fn ranks<const N: usize>(&self, constraint: usize, ranks: [usize; N]) -> [f64; N] {
-        quantiles::order_statistics_f32(&self.margins[constraint], ranks).map(f64::from)
+    pub(super) fn kept(&self, position: usize) -> Vec<f64> {
+        let mut values = Vec::with_capacity(self.draws.min(16 * BLOCK));
+        for part in self.parts.iter().filter(|part| !part.kept.is_empty()) {
+            values.extend_from_slice(&part.kept[position * part.draws..][..part.draws]);
+        }
+        values
     }
+}
+
+/// How many of these are not a number.
+pub(super) fn not_a_number(margins: &[f32]) -> u64 {
+    margins.iter().filter(|margin| margin.is_nan()).count() as u64
+}
+
+/// Order statistics at these ranks (0 is the lowest); not a number ranks lowest.
+pub(super) fn ranks<const N: usize>(values: &[f32], ranks: [usize; N]) -> [f64; N] {
+    quantiles::order_statistics_f32(values, ranks).map(f64::from)
 }

@@ -2,13 +2,16 @@
 //!
 //! After JCGM 101:2008, 7.9: a result is settled when twice its standard error is below the numerical tolerance.
 
-use rayon::iter::{IndexedParallelIterator, ParallelIterator};
-use rayon::slice::ParallelSliceMut;
+use std::ops::Range;
+
+use rayon::iter::{
+    IndexedParallelIterator, IntoParallelIterator, IntoParallelRefMutIterator, ParallelIterator,
+};
 
 use super::case::Case;
 use super::machine::{BLOCK, Machine, is_column, streams};
 use super::margins::margins;
-use super::record::{Record, Segment};
+use super::record::{Part, Record, not_a_number, ranks};
 use crate::math::kernels::{self, Operand};
 use crate::math::quantiles;
 use crate::math::streams::Stream;
@@ -18,8 +21,6 @@ use crate::plan::{NodeId, Plan};
 pub const FIRST_ROUND: usize = 65_536;
 /// The largest number of draws that doubling reaches.
 pub const CAP: usize = 1 << 20;
-/// Draws made at once: bounds the memory beside the margins.
-const SEGMENT: usize = 262_144;
 /// A standard error of a chance at or below this is settled anyway.
 const CHANCE_SETTLED: f64 = 0.002;
 /// The finest tolerance of a margin, dex.
@@ -51,28 +52,46 @@ pub struct Statistics {
     pub low: f64,
     /// 95 % quantile.
     pub high: f64,
-    /// The largest of twice the standard errors of the three.
+    /// The largest of twice the standard errors of the three; infinite where one of them may be infinite or finite.
     pub twice_error: f64,
 }
 
 /// The draws of one case and what follows from them.
 #[derive(Debug)]
 pub struct Outcome {
-    /// Margins and kept values.
+    /// The draws.
     pub record: Record,
     /// Of each constraint of the plan.
     pub statistics: Vec<Statistics>,
     /// Whether the answers are settled; `None` under a fixed number of draws.
     pub settled: Option<bool>,
-    /// Nodes whose values were kept.
-    pub kept: Vec<NodeId>,
+    /// Nodes whose values were kept, in order.
+    kept: Vec<Kept>,
+}
+
+/// What is kept of a node.
+#[derive(Clone, Copy, Debug)]
+struct Kept {
+    node: NodeId,
+    /// 5 % quantile, median, 95 % quantile in the first draws.
+    quantiles: [f64; 3],
 }
 
 impl Outcome {
-    /// The kept values of a node; `None` for a node that has one value for all draws.
+    fn position(&self, node: NodeId) -> Option<usize> {
+        self.kept.binary_search_by_key(&node, |kept| kept.node).ok()
+    }
+
+    /// The values of a kept node in the first draws; `None` for a node that has one value for all draws.
     #[must_use]
-    pub fn values(&self, node: NodeId) -> Option<&[f64]> {
-        self.kept.binary_search(&node).ok().map(|at| self.record.kept[at].as_slice())
+    pub fn values(&self, node: NodeId) -> Option<Vec<f64>> {
+        Some(self.record.kept(self.position(node)?))
+    }
+
+    /// 5 % quantile, median and 95 % quantile of a kept node; `None` for a node that has one value for all draws.
+    #[must_use]
+    pub fn quantiles(&self, node: NodeId) -> Option<[f64; 3]> {
+        Some(self.kept[self.position(node)?].quantiles)
     }
 }
 
@@ -94,34 +113,43 @@ pub fn interval_ranks(n: usize) -> [usize; 3] {
 #[must_use]
 pub fn run(plan: &Plan, cases: &[Case], settings: Settings) -> Vec<Outcome> {
     let streams = streams(plan, settings.seed);
-    let kept: Vec<NodeId> = plan.outputs().into_iter().filter(|node| is_column(plan, *node)).collect();
+    let nodes: Vec<NodeId> = plan.outputs().into_iter().filter(|node| is_column(plan, *node)).collect();
     let mut outcomes: Vec<Outcome> = cases
         .iter()
         .map(|_| Outcome {
-            record: Record::new(plan.constraints.len(), kept.len()),
+            record: Record::default(),
             statistics: Vec::new(),
             settled: None,
-            kept: kept.clone(),
+            kept: nodes.iter().map(|node| Kept { node: *node, quantiles: [f64::NAN; 3] }).collect(),
         })
         .collect();
     let mut open: Vec<usize> = (0..cases.len()).collect();
     let (mut done, mut goal) = (0, settings.draws.unwrap_or(FIRST_ROUND));
     loop {
-        while done < goal {
-            let draws = SEGMENT.min(goal - done);
-            let batch: Vec<&Case> = open.iter().map(|at| &cases[*at]).collect();
-            let (segment, values) = segment(plan, &streams, &batch, &kept, done, draws);
-            for (position, at) in open.iter().enumerate() {
-                let record = &mut outcomes[*at].record;
-                record.extend(&segment, position, open.len(), BLOCK);
-                keep(record, &values, position, open.len(), draws.min(FIRST_ROUND.saturating_sub(done)));
+        let batch: Vec<&Case> = open.iter().map(|at| &cases[*at]).collect();
+        let blocks: Vec<Vec<Part>> = (done..goal)
+            .step_by(BLOCK)
+            .collect::<Vec<usize>>()
+            .into_par_iter()
+            .map_init(
+                || Workplace::new(plan),
+                |place, first| place.block(plan, &streams, &batch, &nodes, first..goal.min(first + BLOCK)),
+            )
+            .collect();
+        for parts in blocks {
+            for (at, part) in open.iter().zip(parts) {
+                outcomes[*at].record.push(part);
             }
-            done += draws;
         }
+        if done == 0 {
+            outcomes.iter_mut().for_each(summarise);
+        }
+        done = goal;
         for at in &open {
             let outcome = &mut outcomes[*at];
+            let record = &outcome.record;
             outcome.statistics =
-                (0..plan.constraints.len()).map(|c| statistics(&outcome.record, c)).collect();
+                (0..plan.constraints.len()).into_par_iter().map(|c| statistics(record, c)).collect();
             if settings.draws.is_none() {
                 outcome.settled = Some(settled(outcome, settings));
             }
@@ -134,87 +162,72 @@ pub fn run(plan: &Plan, cases: &[Case], settings: Settings) -> Vec<Outcome> {
     }
 }
 
-/// Makes `draws` draws from number `first`: margins, and values of the kept nodes among the first draws of all.
-fn segment(
-    plan: &Plan,
-    streams: &[Stream],
-    cases: &[&Case],
-    kept: &[NodeId],
-    first: usize,
-    draws: usize,
-) -> (Segment, Vec<f64>) {
-    let blocks = draws.div_ceil(BLOCK);
-    let slots = cases.len() * plan.constraints.len();
-    let keeping = draws.min(FIRST_ROUND.saturating_sub(first)).div_ceil(BLOCK);
-    let kept_slots = cases.len() * kept.len();
-    let mut segment = Segment {
-        draws,
-        margins: vec![0.0; blocks * slots * BLOCK],
-        holds: vec![0; blocks * slots * BLOCK / 64],
-    };
-    let mut values = vec![0.0; keeping * kept_slots * BLOCK];
-    if slots == 0 && kept_slots == 0 {
-        return (segment, values);
-    }
-    // Blocks beyond those kept take an empty part each.
-    let (mut empty_margins, mut empty_holds) = (vec![0.0_f32; blocks], vec![0_u64; blocks]);
-    let margin_parts = if slots == 0 { &mut empty_margins } else { &mut segment.margins };
-    let hold_parts = if slots == 0 { &mut empty_holds } else { &mut segment.holds };
-    let mut value_parts: Vec<&mut [f64]> =
-        if kept_slots == 0 { Vec::new() } else { values.chunks_mut(kept_slots * BLOCK).collect() };
-    value_parts.resize_with(blocks, Default::default);
-    margin_parts
-        .par_chunks_mut((slots * BLOCK).max(1))
-        .zip(hold_parts.par_chunks_mut((slots * BLOCK / 64).max(1)))
-        .zip(value_parts.par_chunks_mut(1))
-        .enumerate()
-        .for_each_init(
-            || (Machine::new(plan), vec![0.0; BLOCK], vec![0.0; BLOCK]),
-            |(machine, scratch, dex), (block, ((margin_part, hold_part), value_part))| {
-                let start = block * BLOCK;
-                let len = BLOCK.min(draws - start);
-                let number = (first + start) as u64;
-                let Some(any) = cases.first() else { return };
-                machine.shared(plan, streams, any, number, len);
-                for (position, case) in cases.iter().enumerate() {
-                    machine.case(plan, streams, case, number, len);
-                    for (at, planned) in plan.constraints.iter().enumerate() {
-                        let slot = position * plan.constraints.len() + at;
-                        let available = machine.values(plan, case, planned.available, len);
-                        let required = machine.values(plan, case, planned.required, len);
-                        let bits = &mut hold_part[slot * BLOCK / 64..][..len.div_ceil(64)];
-                        margins(available, required, &mut scratch[..len], &mut dex[..len], bits);
-                        let out = &mut margin_part[slot * BLOCK..][..len];
-                        for (out, dex) in out.iter_mut().zip(dex.iter()) {
-                            // Held at single precision: holding was decided before.
-                            #[allow(clippy::cast_possible_truncation)]
-                            {
-                                *out = *dex as f32;
-                            }
-                        }
-                    }
-                    if !value_part[0].is_empty() {
-                        for (at, node) in kept.iter().enumerate() {
-                            let slot = position * kept.len() + at;
-                            if let Operand::Column(column) = machine.values(plan, case, *node, len) {
-                                value_part[0][slot * BLOCK..][..len].copy_from_slice(column);
-                            }
-                        }
-                    }
-                }
-            },
-        );
-    drop(value_parts);
-    (segment, values)
+/// What one thread works with.
+struct Workplace {
+    machine: Machine,
+    ratio: Vec<f64>,
+    dex: Vec<f64>,
 }
 
-fn keep(record: &mut Record, values: &[f64], case: usize, cases: usize, draws: usize) {
-    let kept = record.kept.len();
-    for (at, column) in record.kept.iter_mut().enumerate() {
-        for (block, start) in (0..draws).step_by(BLOCK).enumerate() {
-            let slot = (block * cases + case) * kept + at;
-            column.extend_from_slice(&values[slot * BLOCK..][..BLOCK.min(draws - start)]);
+impl Workplace {
+    fn new(plan: &Plan) -> Self {
+        Self { machine: Machine::new(plan), ratio: vec![0.0; BLOCK], dex: vec![0.0; BLOCK] }
+    }
+
+    /// These draws of several cases: a part for each.
+    fn block(
+        &mut self,
+        plan: &Plan,
+        streams: &[Stream],
+        cases: &[&Case],
+        kept: &[NodeId],
+        draws: Range<usize>,
+    ) -> Vec<Part> {
+        let (number, len) = (draws.start as u64, draws.len());
+        if let Some(any) = cases.first() {
+            self.machine.shared(plan, streams, any, number, len);
         }
+        let words = len.div_ceil(64);
+        cases
+            .iter()
+            .map(|case| {
+                self.machine.case(plan, streams, case, number, len);
+                let kept = if draws.start < FIRST_ROUND { kept } else { &[] };
+                let mut part = Part::new(len, plan.constraints.len(), kept.len());
+                for (at, planned) in plan.constraints.iter().enumerate() {
+                    let available = self.machine.values(plan, case, planned.available, len);
+                    let required = self.machine.values(plan, case, planned.required, len);
+                    let bits = &mut part.holds[at * words..][..words];
+                    margins(available, required, &mut self.ratio[..len], &mut self.dex[..len], bits);
+                    // Held at single precision: holding was decided before.
+                    narrow(&mut part.margins[at * len..][..len], &self.dex);
+                }
+                for (at, node) in kept.iter().enumerate() {
+                    if let Operand::Column(column) = self.machine.values(plan, case, *node, len) {
+                        part.kept[at * len..][..len].copy_from_slice(column);
+                    }
+                }
+                part
+            })
+            .collect()
+    }
+}
+
+/// Quantiles of what was kept.
+fn summarise(outcome: &mut Outcome) {
+    let record = &outcome.record;
+    outcome.kept.par_iter_mut().enumerate().for_each(|(at, kept)| {
+        let mut values = record.kept(at);
+        let ranks = interval_ranks(values.len());
+        kept.quantiles = quantiles::order_statistics_f64(&mut values, ranks);
+    });
+}
+
+/// Single precision of a column.
+#[allow(clippy::cast_possible_truncation)]
+fn narrow(out: &mut [f32], column: &[f64]) {
+    for (out, value) in out.iter_mut().zip(column) {
+        *out = *value as f32;
     }
 }
 
@@ -230,16 +243,21 @@ fn statistics(record: &Record, constraint: usize) -> Statistics {
         [centre[at].saturating_sub(off), (centre[at] + off).min(n - 1)]
     };
     let [[a, b], [c, d], [e, f]] = [beside(0), beside(1), beside(2)];
-    let values = record.ranks(constraint, [centre[0], centre[1], centre[2], a, b, c, d, e, f]);
+    let margins = record.margins(constraint);
+    let values = ranks(&margins, [centre[0], centre[1], centre[2], a, b, c, d, e, f]);
     let twice_error = values[3..]
         .chunks(2)
-        // Ends that are infinite do not move with more draws.
-        .map(|ends| if ends[0] == ends[1] { 0.0 } else { ends[1] - ends[0] })
-        .filter(|error| error.is_finite())
+        .map(|ends| match ends[1] - ends[0] {
+            // Infinite on both sides, or not a number on both: more draws do not move it.
+            _ if ends[0] == ends[1] || ends[0].is_nan() && ends[1].is_nan() => 0.0,
+            // On one side only: more draws decide.
+            error if error.is_nan() => f64::INFINITY,
+            error => error,
+        })
         .fold(0.0, f64::max);
     Statistics {
         holding: record.holding(constraint),
-        not_a_number: record.not_a_number(constraint) as u64,
+        not_a_number: not_a_number(&margins),
         low: values[0],
         median: values[1],
         high: values[2],

@@ -26,7 +26,7 @@ pub fn draft(catalog: &Catalog, body_plan: &str) -> String {
             .default
             .as_ref()
             .map_or_else(|| "no default".to_owned(), |word| format!("default {word}"));
-        line(&format!("  # {name}: {}   # {default}; {limits} entries ask for it", words.join(" | ")));
+        line(&format!("  # {name}: {}   # {default}; asked for by {limits}", words.join(" | ")));
     }
     line("# A value is written 210 nm, 210 ± 30 nm, 210 nm ×/÷ 1.5, { min: 150 nm, max: 300 nm },");
     line("# or { anywhere_in: [150 nm, 300 nm] } where the organism may have any of these.");
@@ -43,7 +43,7 @@ pub fn draft(catalog: &Catalog, body_plan: &str) -> String {
             let unit = quantity.unit.text();
             let about = quantity.about.split_whitespace().collect::<Vec<_>>().join(" ");
             let assumed = if quantity.default.is_some() { "; assumed when not stated" } else { "" };
-            line(&format!("  # {name}: _ {unit}   # {about}; opens {limits} limits{assumed}"));
+            line(&format!("  # {name}: _ {unit}   # {about}; limits opened: {limits}{assumed}"));
         }
     }
     text

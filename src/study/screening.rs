@@ -9,7 +9,7 @@ use crate::candidate::Candidate;
 use crate::catalog::Catalog;
 use crate::judge::{Asked, Assessment, assess, contradictions};
 use crate::plan::{Plan, shape_key};
-use crate::run::{self, Case, FIRST_ROUND};
+use crate::run::{self, Case, Decisive, FIRST_ROUND};
 use crate::text::Problems;
 
 /// Draws of one batch of candidates take about this many bytes at most.
@@ -69,19 +69,20 @@ fn screen_batch(
 ) -> Vec<Screened> {
     let streams = run::streams(plan, asked.settings.seed);
     let mut cases: Vec<Case> = batch.iter().map(|at| Case::new(catalog, plan, &candidates[*at])).collect();
-    cases.par_iter_mut().for_each(|case| run::choose(plan, case, &streams));
+    let share = asked.settings.pass_at;
+    let decisive: Vec<Vec<Decisive>> =
+        cases.par_iter_mut().map(|case| run::choose(plan, case, &streams, share)).collect();
     let outcomes = run::run(plan, &cases, asked.settings);
-    let together: Vec<_> = batch.iter().zip(&cases).zip(&outcomes).collect();
+    let together: Vec<_> = batch.iter().zip(&cases).zip(&outcomes).zip(&decisive).collect();
     together
         .into_par_iter()
-        .map(|((at, case), outcome)| {
+        .map(|(((at, case), outcome), decisive)| {
             let candidate = &candidates[*at];
             let problems = contradictions(catalog, candidate, plan, case, outcome);
             if !problems.is_empty() {
                 return Err(problems);
             }
-            let decisive = run::decisive(plan, case, &streams, asked.settings.pass_at);
-            Ok(assess(catalog, candidate, plan, case, outcome, &decisive, asked))
+            Ok(assess(catalog, candidate, plan, case, outcome, decisive, asked))
         })
         .collect()
 }

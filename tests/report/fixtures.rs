@@ -2,8 +2,9 @@
 
 use hypobiont::judge::Assessment;
 use hypobiont::judge::assessment::{
-    Assessed, Basis, Citation, ConstraintResult, Extrapolation, Interval, Marginal, Origin, Overall,
-    OverallResult, ParameterResult, QuantityResult, Role, RunRecord, SpeaksOf, Verdict, Warning, Working,
+    Assessed, Basis, Citation, ConstraintResult, DoubtfulGround, Extrapolation, Interval, Marginal, Origin,
+    Overall, OverallResult, ParameterResult, QuantityResult, Role, RunRecord, SpeaksOf, Verdict, Warning,
+    Working,
 };
 use hypobiont::quantity::Unit;
 
@@ -24,6 +25,8 @@ fn limit(id: &str, title: &str, family: &str, basis: Basis, verdict: Verdict) ->
         required_says: "what it takes".into(),
         available_formula: "there".into(),
         required_formula: "taken".into(),
+        available_tex: "a".into(),
+        required_tex: "b".into(),
         parameters: vec![],
         meaning: "Below this there is less than it takes.".into(),
         exceptions: None,
@@ -34,6 +37,10 @@ fn limit(id: &str, title: &str, family: &str, basis: Basis, verdict: Verdict) ->
         sources: vec!["quarl-2391".into()],
         doubts: vec![],
     }
+}
+
+fn doubt(what: &str, standing: &str) -> DoubtfulGround {
+    DoubtfulGround { what: what.into(), standing: standing.into() }
 }
 
 /// available and required in the unit; chance; median, low and high of the margin in dex.
@@ -161,7 +168,7 @@ fn assessment(name: &str, file: &str) -> Assessment {
             ),
             (
                 "oswin-2388",
-                citation("Oswin B (2388) A budget from a lecture. Unpublished", None, "from-memory"),
+                citation("Oswin B (2388) A budget from a letter. Unpublished", None, "from-memory"),
             ),
             (
                 "pell-2395",
@@ -218,6 +225,7 @@ pub(crate) fn failing() -> Assessment {
         [f64::NEG_INFINITY, f64::NEG_INFINITY, -0.21],
     );
     lumen.sources.push("oswin-2388".into());
+    lumen.doubts = vec![doubt("least-lumen", "from-memory")];
     let mut upkeep = speaking(
         with(
             limit(
@@ -244,6 +252,7 @@ pub(crate) fn failing() -> Assessment {
         unit: unit("°C"),
     });
     upkeep.sources = vec!["pell-2395".into(), "quarl-2391".into()];
+    upkeep.doubts = vec![doubt("upkeep.rate", "disputed")];
     let near = with(
         limit("uptake", "Uptake by diffusion", "supply", Physical, Verdict::Marginal(Marginal::Near)),
         "fmol/s",
@@ -269,6 +278,8 @@ pub(crate) fn failing() -> Assessment {
         [1.52, 1.2, 1.8],
     );
     turgor.sources = vec!["oswin-2388".into()];
+
+    turgor.doubts = vec![doubt("held-over", "from-memory")];
     a.constraints = vec![
         contents,
         lumen,
@@ -466,6 +477,7 @@ pub(crate) fn hostile() -> Assessment {
         }
         result.exceptions.iter_mut().chain(&mut result.reason).for_each(evil);
         result.sources.push(HOSTILE.into());
+        result.doubts.push(DoubtfulGround { what: HOSTILE.into(), standing: HOSTILE.into() });
         result.missing.iter_mut().flatten().for_each(evil);
         result.parameters.iter_mut().for_each(|one| evil(&mut one.name));
         result.extrapolated.iter_mut().for_each(|one| evil(&mut one.relation));

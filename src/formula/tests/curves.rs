@@ -2,6 +2,7 @@ use proptest::prelude::{Just, Strategy, prop_oneof};
 use proptest::{prop_assert, prop_assert_eq, proptest};
 
 use super::{Axes, Between, Curve, CurveFault, Form, Outside, Scale};
+use crate::math::kernels;
 use crate::quantity::Dimension;
 
 const LINEAR: Axes = Axes { argument: Scale::Linear, value: Scale::Linear };
@@ -88,6 +89,20 @@ fn logarithmic_axes_make_powers_and_exponentials_straight() {
             assert!((found / expected - 1.0).abs() < 1e-14, "{axes:?}: {found}");
         }
     }
+}
+
+#[test]
+fn a_reciprocal_axis_makes_an_arrhenius_law_straight() {
+    // exp(-60 kJ/mol / (R T)) between 280 K and 330 K, read at 300 K and at both ends.
+    let law = |temperature: f64| kernels::exp(-60e3 / (8.314_462_618 * temperature));
+    let axes = Axes { argument: Scale::Reciprocal, value: Scale::Log };
+    let points = [(280.0, law(280.0)), (330.0, law(330.0))];
+    let plot = curve(axes, Between::Straight, Outside::Edge, &points);
+    for x in [280.0, 300.0, 329.0, 330.0] {
+        assert!((plot.value(x) / law(x) - 1.0).abs() < 1e-13, "{x}");
+    }
+    assert_eq!(plot.value(250.0), law(280.0));
+    assert_eq!(fault(axes, &[(0.0, 1.0), (1.0, 2.0)]), CurveFault::NotPositive { position: 0 });
 }
 
 #[test]

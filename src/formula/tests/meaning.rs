@@ -37,6 +37,8 @@ fn formulas_have_the_values_of_arithmetic() {
         ("(-x)^2", 9.0),
         ("2 * -x", -6.0),
         ("2^-2", 0.25),
+        // Not made of literals, though one part of it is, with more decimals than an exact ratio may have.
+        ("4^(0.12345678901 * 0 + x / 6)", 2.0),
         ("x^-1 * x", 1.0),
         ("diameter^2 / (1 [km])^2", 4e-6),
         ("mass^0.75 / (1 [kg])^(3/4)", 8.0),
@@ -58,6 +60,15 @@ fn formulas_have_the_values_of_arithmetic() {
     ] {
         let found = value(text);
         assert!(found == expected || (found - expected).abs() < 1e-14 * expected.abs(), "{text} = {found}");
+    }
+}
+
+#[test]
+fn of_equal_numbers_the_least_and_the_greatest_is_the_first() {
+    for (text, negative) in
+        [("min(0, -0)", false), ("min(-0, 0)", true), ("max(-0, 0, -0)", true), ("max(0, -0)", false)]
+    {
+        assert_eq!(value(text).is_sign_negative(), negative, "{text}");
     }
 }
 

@@ -22,9 +22,9 @@ pub enum Arithmetic {
     Multiply,
     /// a / b.
     Divide,
-    /// The smaller of both; NaN if either is NaN.
+    /// The smaller of both, the first of equal ones (0 and -0 are equal); NaN if either is NaN.
     Min,
-    /// The larger of both; NaN if either is NaN.
+    /// The larger of both, the first of equal ones; NaN if either is NaN.
     Max,
 }
 

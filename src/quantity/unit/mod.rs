@@ -72,6 +72,9 @@ impl Unit {
         if !(multiplier.is_normal() && divisor.is_normal() && factor.is_normal()) {
             return Err(does_not_fit());
         }
+        if !dimension.exponents().into_iter().all(parser::can_be_power) {
+            return Err(does_not_fit());
+        }
         let offset = factors.first().map_or(0.0, |factor| factor.found.symbol.offset);
         Ok(Self { text: parser::canonical(&factors), dimension, multiplier, divisor, offset })
     }

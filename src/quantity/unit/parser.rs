@@ -18,8 +18,15 @@ use crate::text::{Fault, visible};
 /// What is expected where no unit stands and nothing more is known.
 pub(in crate::quantity) const ANY_UNIT: &str = "a unit such as `nm`, `kJ/mol` or `1/s`";
 
-/// Largest part of an exponent.
+/// Largest whole power.
 const LARGEST: i64 = 30;
+/// Most parts of one in a power: three decimals are the most that a published exponent has.
+const FINEST: i64 = 1000;
+
+/// Whether an exponent can be read as a power, whole, decimal or fraction: what is printed must read again.
+pub(super) fn can_be_power(exponent: Exponent) -> bool {
+    i64::from(exponent.denominator()) <= FINEST && exponent.value().abs() < (LARGEST + 1) as f64
+}
 
 /// A symbol with its power; below the line the power is that of the divisor.
 #[derive(Clone)]
@@ -226,9 +233,10 @@ impl Cursor<'_> {
             return self.checked(sign * whole, 1);
         }
         let decimals = self.digits();
-        // Three decimals are the most that a published exponent has.
-        let places = u32::try_from(decimals.len()).ok().filter(|places| (1..=3).contains(places))?;
-        let scale = 10_i64.pow(places);
+        let scale = 10_i64.checked_pow(u32::try_from(decimals.len()).ok()?)?;
+        if decimals.is_empty() || scale > FINEST {
+            return None;
+        }
         let decimals: i64 = self.text[decimals].parse().ok()?;
         Exponent::new(sign * (whole * scale + decimals), scale).filter(|power| power.value() != 0.0)
     }
@@ -238,20 +246,20 @@ impl Cursor<'_> {
         self.skip_blanks();
         let sign = if self.takes(is_minus) { -1 } else { 1 };
         let digits = self.digits();
-        let numerator = sign * whole(&self.text[digits])?;
+        let numerator = sign * part(&self.text[digits])?;
         self.skip_blanks();
         let mut denominator = 1;
         if self.takes(is_slash) {
             self.skip_blanks();
             let digits = self.digits();
-            denominator = whole(&self.text[digits])?;
+            denominator = part(&self.text[digits])?;
             self.skip_blanks();
         }
         if self.takes(|c| c == ')') { self.checked(numerator, denominator) } else { None }
     }
 
     fn checked(&self, numerator: i64, denominator: i64) -> Option<Exponent> {
-        (numerator != 0).then(|| Exponent::new(numerator, denominator))?
+        (numerator != 0).then(|| Exponent::new(numerator, denominator))?.filter(|power| can_be_power(*power))
     }
 
     fn wrong_power(&self, start: usize) -> Fault {
@@ -350,6 +358,11 @@ fn unknown(symbol: &str, span: Range<usize>) -> Fault {
 
 fn whole(digits: &str) -> Option<i64> {
     digits.parse().ok().filter(|n: &i64| n.abs() <= LARGEST)
+}
+
+/// A part of a fraction.
+fn part(digits: &str) -> Option<i64> {
+    digits.parse().ok().filter(|n: &i64| n.abs() <= (LARGEST + 1) * FINEST)
 }
 
 fn is_letter(c: char) -> bool {

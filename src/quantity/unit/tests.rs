@@ -239,6 +239,31 @@ fn broken_units_are_faults_that_point_at_the_place() {
 }
 
 #[test]
+fn every_power_that_is_read_is_read_again() {
+    for (text, canonical) in [
+        ("m^0.111", "m^(111/1000)"),
+        ("m^11.6", "m^(58/5)"),
+        ("m^-30.999", "m^(-30999/1000)"),
+        ("m^(31000/1000 )", ""),
+        ("m^(1/1001)", ""),
+        ("m^0.1234", ""),
+        ("m^31", ""),
+        // A sum of powers that are read one by one.
+        ("m^20 m^20", ""),
+        ("m^20 m^20/m^20", "m^20 m^20/m^20"),
+        ("m^(1/999) m^(1/998)", ""),
+    ] {
+        let read = Unit::read(text).ok();
+        assert_eq!(read.as_ref().map_or("", Unit::text), canonical, "{text}");
+        if let Some(unit) = read {
+            assert_eq!(Unit::read(unit.text()), Ok(unit.clone()));
+            let coherent = Unit::coherent(unit.dimension());
+            assert_eq!(Unit::read(coherent.text()), Ok(coherent.clone()));
+        }
+    }
+}
+
+#[test]
 fn the_coherent_unit_of_a_dimension_is_read_with_factor_one() {
     for text in ["kJ/(mol h)", "mV", "1/(m^2 s)", "MPa m^(1/2)", "", "mmol/L", "lx"] {
         let coherent = Unit::coherent(unit(text).dimension());
@@ -249,9 +274,11 @@ fn the_coherent_unit_of_a_dimension_is_read_with_factor_one() {
 
 fn any_unit() -> impl Strategy<Value = String> {
     let symbols: Vec<String> = all().map(|(text, _)| text).filter(|text| text != "°C").collect();
-    let factor =
-        (prop::sample::select(symbols), prop::sample::select(vec!["", "^2", "⁻¹", "^(1/2)", "^-0.25"]))
-            .prop_map(|(symbol, power)| format!("{symbol}{power}"));
+    let factor = (
+        prop::sample::select(symbols),
+        prop::sample::select(vec!["", "^2", "⁻¹", "^(1/2)", "^-0.25", "^0.111"]),
+    )
+        .prop_map(|(symbol, power)| format!("{symbol}{power}"));
     let product = prop::collection::vec(factor, 1..3);
     (product.clone(), prop::option::of(product)).prop_map(|(above, below)| match below {
         Some(below) => format!("{}/({})", above.join(" "), below.join("·")),

@@ -23,11 +23,12 @@ pub(super) fn text(a: &Assessment, numbered: &Numbered<'_>) -> String {
     if let Some(text) = words::speaks_of(a, result) {
         out += &format!("\nIt speaks of {}.\n", inline(&text));
     }
-    for (side, says, formula) in [
-        ("Available", &result.available_says, &result.available_formula),
-        ("Required", &result.required_says, &result.required_formula),
+    for (side, says, formula, tex) in [
+        ("Available", &result.available_says, &result.available_formula, &result.available_tex),
+        ("Required", &result.required_says, &result.required_formula, &result.required_tex),
     ] {
-        out += &format!("\n{side}, {}:\n\n{}", inline(says), block(formula));
+        out += &format!("\n{side}, {}, as evaluated and as TeX:\n\n{}", inline(says), block("text", formula));
+        out += &format!("\n{}", block("math", tex));
     }
     let rows = numbers(a, &[&result.available_formula, &result.required_formula], &result.parameters);
     if !rows.is_empty() {

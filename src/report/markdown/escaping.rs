@@ -12,10 +12,10 @@ pub(super) fn cell(text: &str) -> String {
 }
 
 /// A block of code, fenced by more backticks than it holds in a row.
-pub(super) fn block(text: &str) -> String {
+pub(super) fn block(kind: &str, text: &str) -> String {
     let longest = text.split(|c| c != '`').map(str::len).max().unwrap_or(0);
     let fence = "`".repeat(longest.max(2) + 1);
-    format!("{fence}text\n{text}\n{fence}\n")
+    format!("{fence}{kind}\n{text}\n{fence}\n")
 }
 
 fn escaped(text: &str, in_table: bool) -> String {
@@ -91,6 +91,6 @@ mod tests {
 
     #[test]
     fn a_block_is_fenced_by_more_backticks_than_it_holds() {
-        assert_eq!(block("a ``` b"), "````text\na ``` b\n````\n");
+        assert_eq!(block("text", "a ``` b"), "````text\na ``` b\n````\n");
     }
 }

@@ -148,7 +148,7 @@ fn rests_on(a: &Assessment) -> String {
     }
     let mut reservations = String::new();
     for result in a.constraints.iter().filter(|result| result.assessed.is_some()) {
-        for (_, text) in words::reservations(a, result) {
+        for (_, text) in words::reservations(result) {
             reservations += &format!("- {}\n", inline(&format!("{}: {text}", result.title)));
         }
     }
@@ -194,7 +194,7 @@ fn method(a: &Assessment, command: &str) -> String {
         env!("CARGO_PKG_NAME"),
         env!("CARGO_PKG_VERSION"),
         a.run.catalog_digest,
-        escaping::block(command)
+        escaping::block("text", command)
     )
 }
 

@@ -41,7 +41,7 @@ pub(super) fn blocks(page: &mut Page, a: &Assessment, every: bool) {
         } else {
             page.blank();
         }
-        fold(page, a, &folded);
+        fold(page, &folded);
     }
 }
 
@@ -100,7 +100,7 @@ fn details(a: &Assessment, result: &ConstraintResult) -> Vec<(&'static str, Stri
             out.push(("Except", exceptions.clone()));
         }
     }
-    out.extend(words::reservations(a, result));
+    out.extend(words::reservations(result));
     if result.verdict != Verdict::Pass {
         out.push(("Entry", format!("`{}`, family {}", result.id, result.family)));
     }
@@ -122,10 +122,10 @@ fn stacked(page: &mut Page, a: &Assessment, result: &ConstraintResult, numbers: 
 }
 
 /// Passes with much room, in one paragraph.
-fn fold(page: &mut Page, a: &Assessment, rows: &[Row<'_>]) {
+fn fold(page: &mut Page, rows: &[Row<'_>]) {
     let titles: Vec<String> = rows
         .iter()
-        .map(|(result, _)| match words::marks(a, result) {
+        .map(|(result, _)| match words::marks(result) {
             Some(marks) => format!("{} ({marks})", result.title),
             None => result.title.clone(),
         })

@@ -46,13 +46,10 @@ pub(in crate::report) fn dex(numbers: &Assessed) -> (String, Option<String>) {
 }
 
 /// What lies behind a number that a reader should know before trusting it: label and sentence.
-pub(in crate::report) fn reservations(
-    a: &Assessment,
-    result: &ConstraintResult,
-) -> Vec<(&'static str, String)> {
+pub(in crate::report) fn reservations(result: &ConstraintResult) -> Vec<(&'static str, String)> {
     let mut out: Vec<_> =
         result.extrapolated.iter().map(|beyond| ("Beyond", extrapolation(beyond))).collect();
-    out.extend(standings(a, result).into_iter().map(|text| ("Standing", text)));
+    out.extend(standings(result).into_iter().map(|text| ("Standing", text)));
     if let Some(numbers) = &result.assessed
         && numbers.not_a_number_share > 0.0
     {
@@ -78,28 +75,26 @@ fn extrapolation(beyond: &Extrapolation) -> String {
     )
 }
 
-/// The sources behind a result that are disputed or cited from memory.
-fn standings(a: &Assessment, result: &ConstraintResult) -> Vec<String> {
-    let cited = result.sources.iter().filter_map(|key| a.citations.get(key));
-    cited
-        .filter(|citation| matches!(citation.standing.as_str(), "disputed" | "from-memory"))
-        .map(|citation| format!("{}: {}", spoken(&citation.standing), citation.text))
+/// The numbers behind a result that are disputed or from memory: a line for each standing.
+fn standings(result: &ConstraintResult) -> Vec<String> {
+    let standings: BTreeSet<&str> = result.doubts.iter().map(|doubt| doubt.standing.as_str()).collect();
+    standings
+        .into_iter()
+        .map(|standing| {
+            let numbers = result.doubts.iter().filter(|doubt| doubt.standing == standing);
+            let names: Vec<String> = numbers.map(|doubt| format!("`{}`", doubt.what)).collect();
+            format!("{}: {}", spoken(standing), names.join(", "))
+        })
         .collect()
 }
 
 /// Short marks for the same, for lists of titles: `beyond its range, from memory`.
-pub(in crate::report) fn marks(a: &Assessment, result: &ConstraintResult) -> Option<String> {
+pub(in crate::report) fn marks(result: &ConstraintResult) -> Option<String> {
     let mut marks = BTreeSet::new();
     if !result.extrapolated.is_empty() {
         marks.insert("beyond its range".to_owned());
     }
-    for key in &result.sources {
-        if let Some(citation) = a.citations.get(key)
-            && matches!(citation.standing.as_str(), "disputed" | "from-memory")
-        {
-            marks.insert(spoken(&citation.standing));
-        }
-    }
+    marks.extend(result.doubts.iter().map(|doubt| spoken(&doubt.standing)));
     if result.assessed.as_ref().is_some_and(|numbers| numbers.not_a_number_share > 0.0) {
         marks.insert("in part not a number".to_owned());
     }

@@ -9,20 +9,21 @@ impl Scene<'_> {
     /// Quotes that do not close, close too early, or hold a backslash that means nothing.
     pub(super) fn quotes(&self) -> Option<Problem> {
         if self.reason.contains("parsing a quoted scalar") {
-            return self.escape();
+            return self.escape(self.opening()?);
         }
         if self.reason.contains("quoted scalar, found") || self.reason.contains("in quoted scalar") {
-            let rest = &self.text[self.at..];
+            let opening = self.opening()?;
+            let rest = &self.text[opening..];
             let after = quoted_length(rest).map(|length| without_comment(first_line(&rest[length..])).trim());
             return Some(
                 if after.is_some_and(|after| after.is_empty() || after.starts_with([',', ']', '}'])) {
                     self.problem(
-                        self.at..self.at + first_line(rest).len(),
+                        opening..opening + first_line(rest).len(),
                         "a text in quotes goes on in a line that is not indented",
                     )
                     .expected("every further line of the text indented deeper than its key")
                 } else {
-                    self.unclosed_quote(self.at)
+                    self.unclosed_quote(opening)
                 },
             );
         }
@@ -51,6 +52,16 @@ impl Scene<'_> {
         Some(self.problem(self.rest_of_line(), "text follows a closing quote").expected(expected))
     }
 
+    /// The quote that the parser stopped at. It counts a character too many behind some lines, so the nearest one before
+    /// stands for it where there is none.
+    fn opening(&self) -> Option<usize> {
+        let is_quote = |c| matches!(c, '"' | '\'');
+        if self.text[self.at..].starts_with(is_quote) {
+            return Some(self.at);
+        }
+        self.text[..self.at].rfind(is_quote)
+    }
+
     fn unclosed_quote(&self, quote: usize) -> Problem {
         let length = without_comment(first_line(&self.text[quote..])).len();
         let sign = &self.text[quote..=quote];
@@ -61,12 +72,12 @@ impl Scene<'_> {
     }
 
     /// The first backslash in double quotes that YAML does not know.
-    fn escape(&self) -> Option<Problem> {
-        let mut at = self.at + 1;
+    fn escape(&self, opening: usize) -> Option<Problem> {
+        let mut at = opening + 1;
         loop {
             at += self.text[at..].find('\\')?;
             let rest = &self.text[at + 1..];
-            let Some(next) = rest.chars().next() else { return Some(self.unclosed_quote(self.at)) };
+            let Some(next) = rest.chars().next() else { return Some(self.unclosed_quote(opening)) };
             let digits = match next {
                 'x' => 2,
                 'u' => 4,
@@ -94,6 +105,19 @@ impl Scene<'_> {
 #[cfg(test)]
 mod tests {
     use crate::text::yaml::tests::shows;
+
+    #[test]
+    fn a_quote_is_found_where_the_parser_counts_a_character_too_many() {
+        shows(
+            "[\n%Å\r\"",
+            r#"
+s.yaml:3:1  the quote that opens here is not closed
+      "
+      ~
+   expected  `"` at the end of the text
+"#,
+        );
+    }
 
     #[test]
     fn quotes_that_do_not_match_are_explained() {

@@ -36,8 +36,8 @@ fn cases() -> Vec<PathBuf> {
 fn differs(case: &Path) -> Option<String> {
     let approved = std::fs::read_to_string(case).unwrap();
     let command = approved.lines().next().unwrap_or_default();
-    let Some(arguments) = command.strip_prefix("$ hypobiont ") else {
-        return Some(format!("{}: the first line is not `$ hypobiont ...`", case.display()));
+    let Some(arguments) = command.strip_prefix("$ hypobiont") else {
+        return Some(format!("{}: the first line does not begin `$ hypobiont`", case.display()));
     };
     let ended = Command::new(env!("CARGO_BIN_EXE_hypobiont"))
         .args(arguments.split_whitespace())

@@ -224,7 +224,15 @@ fn labelled(label: &str, said: &str, width: usize) -> String {
     let room = width.saturating_sub(HANG).max(LEAST_ROOM);
     let mut lines = vec![String::new()];
     let mut filled = 0;
+    // A bracket stays with what it opens.
+    let mut words: Vec<String> = Vec::new();
     for word in said.split(' ') {
+        match words.last_mut() {
+            Some(last) if last.ends_with('{') => *last += &format!(" {word}"),
+            _ => words.push(word.to_owned()),
+        }
+    }
+    for word in words {
         let needed = word.width();
         if filled > 0 && filled + 1 + needed > room {
             lines.push(String::new());
@@ -235,7 +243,7 @@ fn labelled(label: &str, said: &str, width: usize) -> String {
                 line.push(' ');
                 filled += 1;
             }
-            line.push_str(word);
+            line.push_str(&word);
             filled += needed;
         }
     }

@@ -40,7 +40,10 @@ fn a_bomb_of_aliases_is_refused_at_the_first() {
 
 #[test]
 fn bytes_that_are_no_text_are_refused() {
-    refused(&Run::new("screen c.yaml").file("c.yaml", b"hypobiont: 1\0name: x\n"), "zero byte");
+    refused(
+        &Run::new("screen c.yaml").file("c.yaml", b"hypobiont: 1\0name: x\n"),
+        "byte 13, in line 1, is zero",
+    );
     refused(&Run::new("screen c.yaml").file("c.yaml", b"hypobiont: 1\nname: 210 \xb1 30\n"), "UTF-8");
     refused(&Run::new("screen c.yaml").file("c.yaml", b"\xff\xfeh\0y\0"), "UTF-16");
 }

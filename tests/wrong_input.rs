@@ -4,7 +4,6 @@
 //! folder, the rest is what stands on standard error; standard output stays empty and the status is 2. HYPOBIONT_REWRITE
 //! writes the messages anew: read each as somebody who sees it for the first time.
 
-mod kinds;
 mod monsters;
 
 use std::collections::BTreeSet;

@@ -3,18 +3,17 @@
 use std::collections::{BTreeMap, BTreeSet};
 
 use super::assessment::{
-    Assessed, Assessment, Citation, ConstraintResult, DoubtfulGround, Extrapolation, Interval, Origin,
-    OverallResult, ParameterResult, QuantityResult, Role, RunRecord, SpeaksOf, Verdict, Warning, Working,
+    Assessed, Assessment, Citation, ConstraintResult, DoubtfulGround, Extrapolation, Interval, OverallResult,
+    RunRecord, SpeaksOf, Verdict, Warning,
 };
 use super::verdict::{Entry, TOLERATED_NOT_A_NUMBER, verdict, whole};
 use crate::candidate::Candidate;
-use crate::catalog::{self, Basis, Catalog, Constraint};
-use crate::formula::Formula;
+use crate::catalog::{Basis, Catalog, Constraint};
 use crate::math::quantiles;
-use crate::plan::{Outside, Plan, Planned, PlannedQuantity, Producer};
+use crate::plan::{Outside, Plan, Planned};
+use crate::quantity::Distribution;
 use crate::quantity::shown::{self, Precision};
 use crate::quantity::written::Value;
-use crate::quantity::{Distribution, Unit};
 use crate::run::{
     CAP, Case, Decisive, FIRST_ROUND, Outcome, Settings, Statistics, chance_error, interval_ranks,
 };
@@ -131,13 +130,13 @@ pub fn assess(
     }
 }
 
-struct Builder<'a> {
-    catalog: &'a Catalog,
-    candidate: &'a Candidate,
-    plan: &'a Plan,
-    case: &'a Case,
-    outcome: &'a Outcome,
-    asked: &'a Asked,
+pub(super) struct Builder<'a> {
+    pub(super) catalog: &'a Catalog,
+    pub(super) candidate: &'a Candidate,
+    pub(super) plan: &'a Plan,
+    pub(super) case: &'a Case,
+    pub(super) outcome: &'a Outcome,
+    pub(super) asked: &'a Asked,
 }
 
 impl Builder<'_> {
@@ -266,7 +265,7 @@ impl Builder<'_> {
         result
     }
 
-    fn quantiles(&self, node: usize) -> [f64; 3] {
+    pub(super) fn quantiles(&self, node: usize) -> [f64; 3] {
         quantiles_at(node, self.case, self.outcome)
     }
 
@@ -320,136 +319,6 @@ impl Builder<'_> {
             }
         }
         found
-    }
-
-    fn quantities(&self) -> Vec<QuantityResult> {
-        let mut results: Vec<QuantityResult> =
-            self.plan.quantities.iter().map(|planned| self.quantity(planned)).collect();
-        // What nothing uses was stated all the same: the report echoes how it was read.
-        for name in &self.plan.unused {
-            if let Some(reading) = self.candidate.given.get(name) {
-                results.push(self.reading(name, reading, Origin::Given));
-            }
-        }
-        for planned in &self.plan.figures {
-            let figure = &self.catalog.figures[planned.figure];
-            let [low, median, high] = self.quantiles(planned.node);
-            results.push(QuantityResult {
-                name: figure.entry.id.clone(),
-                about: figure.entry.title.clone(),
-                role: Role::Unknown,
-                origin: Origin::Figure(figure.entry.id.clone()),
-                working: Some(self.working(&figure.entry, &figure.formula)),
-                distribution: String::new(),
-                median,
-                low,
-                high,
-                chosen: None,
-                unit: figure.unit.clone(),
-                remark: None,
-            });
-        }
-        for (name, adopted) in &self.candidate.adopted {
-            results.push(self.reading(name, &adopted.reading, Origin::Adopted));
-        }
-        results
-    }
-
-    fn reading(
-        &self,
-        name: &str,
-        reading: &crate::quantity::written::Reading,
-        origin: Origin,
-    ) -> QuantityResult {
-        let quantity = self.catalog.quantities.get(name);
-        let (role, [low, median, high]) = match &reading.value {
-            Value::Unknown(distribution) => (Role::Unknown, quantiles_of(distribution)),
-            Value::Free(range) => (Role::Free, [range.low, range.typical, range.high]),
-        };
-        QuantityResult {
-            name: name.to_owned(),
-            about: quantity.map(|quantity| quantity.about.clone()).unwrap_or_default(),
-            role,
-            origin,
-            working: None,
-            distribution: described(&reading.value, &reading.unit),
-            median,
-            low,
-            high,
-            chosen: None,
-            unit: reading.unit.clone(),
-            remark: reading.about.clone(),
-        }
-    }
-
-    fn quantity(&self, planned: &PlannedQuantity) -> QuantityResult {
-        let PlannedQuantity { name, node, producer } = planned;
-        let (node, producer) = (*node, *producer);
-        let quantity = &self.catalog.quantities[name];
-        let free = self.plan.free.iter().position(|number| number.name == *name);
-        let stated = self.candidate.stated(name);
-        let default = || {
-            let default = quantity.default.as_ref()?;
-            default.value.of(&self.candidate.attributes).ok()
-        };
-        let value = stated.map(|reading| &reading.value).or_else(|| match producer {
-            Producer::Default => default(),
-            _ => None,
-        });
-        let unit = stated.map_or_else(|| quantity.unit.clone(), |reading| reading.unit.clone());
-        let [low, median, high] = match value {
-            Some(Value::Unknown(distribution)) => quantiles_of(distribution),
-            _ => self.quantiles(node),
-        };
-        let (origin, distribution) = match producer {
-            Producer::Given => (Origin::Given, value.map(|value| described(value, &unit))),
-            Producer::Habitat => (Origin::Habitat, value.map(|value| described(value, &unit))),
-            Producer::Default => (Origin::Default, value.map(|value| described(value, &unit))),
-            Producer::Relation(at) => (Origin::Relation(self.catalog.relations[at].entry.id.clone()), None),
-        };
-        let working = match producer {
-            Producer::Relation(at) => {
-                let relation = &self.catalog.relations[at];
-                Some(self.working(&relation.entry, &relation.formula))
-            }
-            _ => None,
-        };
-        QuantityResult {
-            name: name.to_owned(),
-            about: quantity.about.clone(),
-            working,
-            role: if free.is_some() { Role::Free } else { Role::Unknown },
-            origin,
-            distribution: distribution.unwrap_or_default(),
-            median,
-            low,
-            high,
-            chosen: free.map(|at| self.case.free[at].value),
-            unit,
-            remark: stated.and_then(|reading| reading.about.clone()),
-        }
-    }
-
-    fn working(&self, entry: &catalog::Entry, formula: &Formula) -> Working {
-        Working { formula: one_line(formula.text()), parameters: self.parameters(entry) }
-    }
-
-    /// The numbers that an entry alone brings along, adopted ones as adopted.
-    fn parameters(&self, entry: &catalog::Entry) -> Vec<ParameterResult> {
-        entry
-            .parameters
-            .iter()
-            .filter_map(|(name, parameter)| {
-                let adopted = self.candidate.adopted.get(&format!("{}.{name}", entry.id));
-                let (distribution, unit) =
-                    match adopted.map(|adopted| (&adopted.reading.value, &adopted.reading.unit)) {
-                        Some((Value::Unknown(distribution), unit)) => (distribution, unit),
-                        _ => (parameter.value.of(&self.candidate.attributes).ok()?, &parameter.unit),
-                    };
-                let [low, median, high] = quantiles_of(distribution);
-                Some(ParameterResult { name: name.clone(), median, low, high, unit: unit.clone() })
-            })
-            .collect()
     }
 
     fn citations(&self, constraints: &[ConstraintResult]) -> BTreeMap<String, Citation> {
@@ -547,22 +416,11 @@ impl Builder<'_> {
 }
 
 /// A formula may be folded over lines in its file.
-fn one_line(text: &str) -> String {
+pub(super) fn one_line(text: &str) -> String {
     text.split_whitespace().collect::<Vec<_>>().join(" ")
 }
 
 fn median_of(values: &mut [f64]) -> f64 {
     let rank = quantiles::rank_median(values.len());
     quantiles::order_statistics_f64(values, [rank])[0]
-}
-
-fn quantiles_of(distribution: &Distribution) -> [f64; 3] {
-    [0.05, 0.5, 0.95].map(|p| distribution.quantile(p))
-}
-
-fn described(value: &Value, unit: &Unit) -> String {
-    match value {
-        Value::Unknown(distribution) => distribution.describe(unit),
-        Value::Free(range) => range.describe(unit),
-    }
 }

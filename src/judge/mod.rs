@@ -2,6 +2,7 @@
 
 mod assess;
 pub mod assessment;
+mod quantities;
 mod verdict;
 
 pub use assess::{Asked, assess, contradictions};

@@ -1,7 +1,7 @@
 //! What is told: an assessment as text for people and for machines.
 //!
 //! Every renderer is a pure function of [`Assessment`]s that gives a text; nothing of science is computed here. Texts of
-//! users are cleaned once, by [`cleaning`], before anything else is done with them.
+//! users are cleaned once, by `cleaning`, before anything else is done with them.
 
 mod cleaning;
 pub mod csv;

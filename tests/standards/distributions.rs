@@ -56,6 +56,30 @@ const CATALOGUE: &[(&str, &str)] = &[
   required: { says: b, formula: '1' }
   meaning: Any.
   source: table
+- id: draws-of-size
+  title: Any
+  family: any
+  basis: physical
+  available: { says: a, formula: size }
+  required: { says: b, formula: '1 [m]' }
+  meaning: A side of a limit is kept draw by draw.
+  source: table
+- id: draws-of-number
+  title: Any
+  family: any
+  basis: physical
+  available: { says: a, formula: number }
+  required: { says: b, formula: '1' }
+  meaning: A side of a limit is kept draw by draw.
+  source: table
+- id: draws-of-kept
+  title: Any
+  family: any
+  basis: physical
+  available: { says: a, formula: kept }
+  required: { says: b, formula: '1' }
+  meaning: A side of a limit is kept draw by draw.
+  source: table
 ",
     ),
 ];

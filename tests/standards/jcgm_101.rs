@@ -257,21 +257,3 @@ fn the_gauge_block_has_the_interval_of_clause_9_5() {
         }],
     );
 }
-
-#[test]
-#[ignore = "gives the standard errors of widths that are written above"]
-fn widths_scatter_from_seed_to_seed() {
-    for (file, coverage) in [("mass.yaml", 0.95), ("loss.yaml", 0.95), ("gauge-block.yaml", 0.99)] {
-        for candidate in candidates(file) {
-            let output = ["mass_deviation", "comparison_loss", "length_deviation"];
-            let plan = Plan::new(catalog(), &candidate, &[]).unwrap();
-            let output =
-                output.into_iter().find(|name| plan.quantities.iter().any(|q| q.name == *name)).unwrap();
-            let widths: Vec<f64> =
-                (2..18).map(|seed| shortest(&values(&candidate, output, seed), coverage)).collect();
-            let mean = widths.iter().sum::<f64>() / widths.len() as f64;
-            let squares: f64 = widths.iter().map(|width| (width - mean) * (width - mean)).sum();
-            println!("{}: {mean:e}, standard error {:e}", candidate.name, (squares / 15.0).sqrt());
-        }
-    }
-}

@@ -254,7 +254,7 @@ impl Reader<'_, '_> {
 
     /// A bound in a unit that reads well.
     fn shown(&self, si: f64) -> String {
-        shown::in_unit(si, Precision::UpTo(6), &self.wanted.unit)
+        shown::in_unit(si, Precision::UpTo(6), self.wanted.unit)
     }
 
     /// The bounds in words.

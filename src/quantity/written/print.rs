@@ -13,7 +13,7 @@ pub fn print(distribution: &Distribution, unit: &Unit) -> String {
         .expect("the factor of a coherent unit is 1, so that every number is its own text")
 }
 
-/// The free range as a candidate may write it; see [`print`].
+/// The free range as a candidate may write it; see [`print()`].
 #[must_use]
 pub fn print_range(range: &FreeRange, unit: &Unit) -> String {
     let write = |unit: &Unit| {

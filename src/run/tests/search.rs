@@ -151,5 +151,5 @@ fn the_search_finds_what_a_search_of_all_points_finds() {
     }
     // Where verdicts no longer hang on it, a search along the axes may end on a ridge with smaller margins.
     assert!(worse.len() <= PROBLEMS / 3, "{} of {PROBLEMS}: {worse:#?}", worse.len());
-    assert!(free >= PROBLEMS / 4, "only {free} of {PROBLEMS} problems have their best inside");
+    assert!(free >= PROBLEMS / 8, "only {free} of {PROBLEMS} problems have their best inside");
 }

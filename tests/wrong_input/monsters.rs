@@ -52,7 +52,7 @@ fn bytes_that_are_no_text_are_refused() {
 fn what_is_no_file_of_sensible_size_is_refused() {
     let sparse = Run::new("screen c.yaml").file("c.yaml", "");
     File::options().write(true).open(sparse.folder().join("c.yaml")).unwrap().set_len(1 << 30).unwrap();
-    refused(&sparse, "16 MiB");
+    refused(&sparse, "`c.yaml` is larger than 16 MiB");
     refused(&Run::new("screen ."), "folder");
     refused(&Run::new("screen missing.yaml"), "does not exist");
     #[cfg(unix)]
@@ -60,20 +60,22 @@ fn what_is_no_file_of_sensible_size_is_refused() {
         let pipe = Run::new("screen c.yaml");
         let made = Command::new("mkfifo").arg(pipe.folder().join("c.yaml")).status().unwrap();
         assert!(made.success());
-        refused(&pipe, "c.yaml");
+        refused(&pipe, "`c.yaml` is no regular file");
     }
 }
 
 #[test]
 fn a_large_file_of_one_kind_of_mistake_gets_a_bounded_answer() {
     let large = "- a: 1\n".repeat(200_000);
-    refused(&Run::new("screen c.yaml").file("c.yaml", &large), "c.yaml");
+    let limit = "the document holds more than 100000 keys and values";
+    refused(&Run::new("screen c.yaml").file("c.yaml", &large), limit);
 }
 
 #[test]
 fn more_documents_than_allowed_are_refused() {
     let many = "---\na: 1\n".repeat(65_537);
-    refused(&Run::new("screen c.yaml").file("c.yaml", &many), "documents");
+    let limit = "the file holds more than 65536 documents";
+    refused(&Run::new("screen c.yaml").file("c.yaml", &many), limit);
 }
 
 #[test]
@@ -147,6 +149,57 @@ fn files_are_whole_and_one_a_candidate() {
     File::open(run.folder().join("reports/c.json")).unwrap().read_to_string(&mut text).unwrap();
     assert_eq!(serde_json::from_str::<serde_json::Value>(&text).unwrap()["format"], 1);
     std::io::stderr().flush().unwrap();
+}
+
+/// A candidate that ends in whatever makes it wrong, of nearly 16 MiB.
+fn of_almost_the_largest_size(piece: &str, head: &str) -> String {
+    format!("{head}{}", piece.repeat(((16 << 20) - head.len()) / piece.len()))
+}
+
+#[test]
+fn the_largest_files_of_any_shape_get_a_bounded_answer() {
+    let head = "hypobiont: 1\nname: large\nattributes: { body_plan: other }\n";
+    let organism = format!("{head}organism:\n  diameter: {{ values: [");
+    for (piece, head, says) in [
+        ("- 1\n", "", "the document holds more than 100000 keys and values"),
+        ("1,", "[", "the document holds more than 100000 keys and values"),
+        ("a: b, ", "!t {", "the document holds more than 100000 keys and values"),
+        ("1 nm, ", organism.as_str(), "the document holds more than 100000 keys and values"),
+        ("---\n", "", "the file holds more than 65536 documents"),
+        ("word ", "", "the document is the text"),
+        ("\n", "", "is empty, or holds nothing but remarks"),
+        ("a: |\n b\n", "", "`a` is repeated"),
+        (": ", "", "no key stands before the colon"),
+        ("\"", "[", "c.yaml:1:"),
+    ] {
+        let run = Run::new("screen c.yaml").file("c.yaml", of_almost_the_largest_size(piece, head));
+        refused(&run, says);
+    }
+}
+
+#[test]
+fn a_file_with_ten_mistakes_gets_ten_messages() {
+    let folder = super::gallery().join("candidate");
+    let ended = Command::new(env!("CARGO_BIN_EXE_hypobiont"))
+        .args(["screen", "ten-mistakes.yaml"])
+        .current_dir(folder)
+        .output()
+        .unwrap();
+    let stderr = String::from_utf8(ended.stderr).unwrap();
+    assert_eq!(stderr.lines().filter(|line| line.starts_with("ten-mistakes.yaml:")).count(), 10, "{stderr}");
+}
+
+#[test]
+fn what_papers_and_editors_write_is_read_as_it_is_meant() {
+    let plain = "{ diameter: 0.6 µm ± 50 nm, swimming_speed: -0.5 m/s ± 2 m/s, turgor_pressure: 2e5 Pa }";
+    let pasted = "{ diameter: 0.6\u{a0}μm +/- 50 nm, swimming_speed: \u{2212}0.5 m·s⁻¹ ± 2 m s^-1, turgor_pressure: 2×10⁵ Pa }";
+    let screened = |organism: &str, mark: &str, end: &str| {
+        let text = FINE.replace("{ diameter: 600 ± 50 nm }", organism).replace('\n', end);
+        Run::new("screen c.yaml --format json --draws 200").file("c.yaml", format!("{mark}{text}")).json()
+    };
+    let expected = screened(plain, "", "\n");
+    assert_eq!(screened(pasted, "", "\n"), expected);
+    assert_eq!(screened(plain, "\u{feff}", "\r\n"), expected);
 }
 
 #[test]

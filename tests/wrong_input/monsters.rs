@@ -191,8 +191,9 @@ fn a_file_with_ten_mistakes_gets_ten_messages() {
 
 #[test]
 fn what_papers_and_editors_write_is_read_as_it_is_meant() {
-    let plain = "{ diameter: 0.6 µm ± 50 nm, swimming_speed: -0.5 m/s ± 2 m/s, turgor_pressure: 2e5 Pa }";
-    let pasted = "{ diameter: 0.6\u{a0}μm +/- 50 nm, swimming_speed: \u{2212}0.5 m·s⁻¹ ± 2 m s^-1, turgor_pressure: 2×10⁵ Pa }";
+    let plain = "{ diameter: 0.6 µm ± 50 nm, turgor_pressure: 2e5 Pa, growth_rate: 1e-5 1/s }";
+    let pasted =
+        "{ diameter: 0.6\u{a0}μm +/- 50 nm, turgor_pressure: 2×10⁵ Pa, growth_rate: 10^\u{2212}5 1/s }";
     let screened = |organism: &str, mark: &str, end: &str| {
         let text = FINE.replace("{ diameter: 600 ± 50 nm }", organism).replace('\n', end);
         Run::new("screen c.yaml --format json --draws 200").file("c.yaml", format!("{mark}{text}")).json()

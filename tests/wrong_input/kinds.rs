@@ -18,7 +18,10 @@ const NAMED: [&str; 4] =
 
 /// Messages that no case can bring about, each with the reason.
 const WITHOUT_CASE: [(&str, &str); 3] = [
-    ("versions of YAML disagree on how this is to be read", "every known way to differ has a sentence of its own"),
+    (
+        "versions of YAML disagree on how this is to be read",
+        "every known way to differ has a sentence of its own",
+    ),
     ("`{}` is not a table", "a text in memory can only have rows of unequal lengths"),
     ("the folder `{}` cannot be read: {}", "whoever runs the tests may be allowed to read every folder"),
 ];

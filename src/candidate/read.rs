@@ -6,7 +6,7 @@ use std::sync::Arc;
 
 use super::Candidate;
 use crate::catalog::{Attribute, Catalog, Of};
-use crate::quantity::written::{self, Reading, Wanted};
+use crate::quantity::written::{self, Reading};
 use crate::text::{Fields, Kind, Node, Problem, Problems, Source, nearest, shortened, yaml};
 
 /// The version of the candidate format.
@@ -269,14 +269,7 @@ impl Reader<'_> {
                 );
                 continue;
             }
-            let wanted = Wanted {
-                name,
-                dimension: quantity.dimension(),
-                bounds: quantity.bounds,
-                unit: &quantity.unit,
-                may_be_free: of == Of::Organism,
-                folder: self.folder,
-            };
+            let wanted = quantity.wanted(of == Of::Organism, self.folder);
             if let Some(reading) = written::read(value, &wanted, self.problems) {
                 if reading.cut > CUT_UNMENTIONED {
                     warnings.push((

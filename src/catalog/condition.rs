@@ -38,6 +38,14 @@ pub enum Match {
 }
 
 impl Condition {
+    /// The condition that asks for one word of one attribute.
+    #[must_use]
+    pub fn asking(attribute: &str, word: &str) -> Self {
+        let clause =
+            Clause { attribute: attribute.to_owned(), words: vec![word.to_owned()], excluded: false };
+        Self { clauses: vec![clause] }
+    }
+
     /// Whether the entry applies to a candidate with these attributes.
     #[must_use]
     pub fn matches(&self, attributes: &BTreeMap<String, String>) -> Match {

@@ -1,6 +1,7 @@
 //! What a catalogue holds: quantities, attributes, constants, sources, relations, constraints, figures, habitats.
 
 use std::collections::{BTreeMap, BTreeSet};
+use std::path::Path;
 use std::sync::Arc;
 
 use super::basis::{Basis, Standing};
@@ -8,7 +9,7 @@ use super::condition::Condition;
 use super::correlations::Correlations;
 use crate::formula::Formula;
 use crate::formula::curves::Curve;
-use crate::quantity::written::Value;
+use crate::quantity::written::{Value, Wanted};
 use crate::quantity::{Bounds, Dimension, Distribution, Unit};
 use crate::text::Place;
 
@@ -110,6 +111,19 @@ impl Quantity {
     #[must_use]
     pub fn dimension(&self) -> Dimension {
         self.unit.dimension()
+    }
+
+    /// What a value of it must be; `folder` is where sample files are named from, if they may stand there.
+    #[must_use]
+    pub fn wanted<'a>(&'a self, may_be_free: bool, folder: Option<&'a Path>) -> Wanted<'a> {
+        Wanted {
+            name: &self.name,
+            dimension: self.dimension(),
+            bounds: self.bounds,
+            unit: &self.unit,
+            may_be_free,
+            folder,
+        }
     }
 }
 

@@ -27,6 +27,7 @@ pub use entry::{
     Provenance, Quantity, Relation, RelationKind, Side, Words, Work,
 };
 
+use crate::formula::Formula;
 use crate::text::Problems;
 
 /// A checked catalogue. Lists of entries are in alphabetical order of id.
@@ -102,6 +103,14 @@ impl Catalog {
         };
         check::check(&catalog, &mut problems);
         if problems.is_empty() { Ok(catalog) } else { Err(problems) }
+    }
+
+    /// The quantities among the names of a formula.
+    #[must_use]
+    pub fn quantities_of<'a>(&'a self, formula: &Formula) -> Vec<&'a str> {
+        let names = formula.names();
+        let known = names.iter().filter_map(|name| self.quantities.get_key_value(*name));
+        known.map(|(name, _)| name.as_str()).collect()
     }
 
     /// The words of every attribute.

@@ -12,7 +12,7 @@ use super::read_tables::{
     one_of_bases, sources, text_of, unit, word,
 };
 use crate::formula::{ExprKind, Formula, Scope};
-use crate::quantity::written::{self, Reading, Wanted};
+use crate::quantity::written::{self, Reading};
 use crate::quantity::{Dimension, Unit};
 use crate::text::{Fields, Kind, Node, Problem, Problems, yaml};
 
@@ -442,15 +442,7 @@ fn habitat(node: &Node, tables: &Tables, problems: &mut Problems) -> Option<Habi
             );
             continue;
         }
-        let wanted = Wanted {
-            name,
-            dimension: quantity.dimension(),
-            bounds: quantity.bounds,
-            unit: &quantity.unit,
-            may_be_free: false,
-            folder: None,
-        };
-        if let Some(reading) = written::read(value, &wanted, problems) {
+        if let Some(reading) = written::read(value, &quantity.wanted(false, None), problems) {
             environment.insert(name.to_owned(), reading);
         }
     }

@@ -17,7 +17,7 @@ use crate::quantity::written::Value;
 use crate::run::{
     CAP, Case, Decisive, FIRST_ROUND, Outcome, Settings, Statistics, chance_error, interval_ranks,
 };
-use crate::text::{Problem, Problems};
+use crate::text::{Problem, Problems, one_line};
 
 /// What was asked for, for the record.
 #[derive(Clone, Debug)]
@@ -166,7 +166,7 @@ impl Builder<'_> {
             let statistics = &self.outcome.statistics[at];
             let constraint = &self.catalog.constraints[planned.constraint];
             let not_a_number = statistics.not_a_number as f64 / draws as f64;
-            let mut result = self.blank(constraint, planned.basis);
+            let mut result = self.blank(constraint, planned.support.basis);
             result.sources = planned.support.sources.iter().cloned().collect();
             result.doubts = planned
                 .support
@@ -189,7 +189,7 @@ impl Builder<'_> {
                     at,
                     id: &constraint.entry.id,
                     family: &constraint.entry.family,
-                    basis: planned.basis,
+                    basis: planned.support.basis,
                     verdict: result.verdict,
                     statistics,
                 });
@@ -413,11 +413,6 @@ impl Builder<'_> {
         }
         warnings
     }
-}
-
-/// A formula may be folded over lines in its file.
-pub(super) fn one_line(text: &str) -> String {
-    text.split_whitespace().collect::<Vec<_>>().join(" ")
 }
 
 fn median_of(values: &mut [f64]) -> f64 {

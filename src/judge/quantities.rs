@@ -1,12 +1,13 @@
 //! The quantities of an assessment: how each reads, where it came from, what it comes to.
 
-use super::assess::{Builder, one_line};
+use super::assess::Builder;
 use super::assessment::{Origin, ParameterResult, QuantityResult, Role, Working};
 use crate::catalog;
 use crate::formula::Formula;
 use crate::plan::{PlannedQuantity, Producer};
+use crate::quantity::Distribution;
 use crate::quantity::written::{Reading, Value};
-use crate::quantity::{Distribution, Unit};
+use crate::text::one_line;
 
 impl Builder<'_> {
     pub(super) fn quantities(&self) -> Vec<QuantityResult> {
@@ -54,7 +55,7 @@ impl Builder<'_> {
             role,
             origin,
             working: None,
-            distribution: described(&reading.value, &reading.unit),
+            distribution: reading.value.describe(&reading.unit),
             median,
             low,
             high,
@@ -66,35 +67,25 @@ impl Builder<'_> {
 
     pub(super) fn quantity(&self, planned: &PlannedQuantity) -> QuantityResult {
         let PlannedQuantity { name, node, producer } = planned;
-        let (node, producer) = (*node, *producer);
         let quantity = &self.catalog.quantities[name];
         let free = self.plan.free.iter().position(|number| number.name == *name);
         let stated = self.candidate.stated(name);
-        let default = || {
-            let default = quantity.default.as_ref()?;
-            default.value.of(&self.candidate.attributes).ok()
+        let default = || quantity.default.as_ref()?.value.of(&self.candidate.attributes).ok();
+        let written = || stated.map(|reading| &reading.value);
+        let (origin, value, working) = match producer {
+            Producer::Given => (Origin::Given, written(), None),
+            Producer::Habitat => (Origin::Habitat, written(), None),
+            Producer::Default => (Origin::Default, default(), None),
+            Producer::Relation(at) => {
+                let relation = &self.catalog.relations[*at];
+                let working = self.working(&relation.entry, &relation.formula);
+                (Origin::Relation(relation.entry.id.clone()), None, Some(working))
+            }
         };
-        let value = stated.map(|reading| &reading.value).or_else(|| match producer {
-            Producer::Default => default(),
-            _ => None,
-        });
         let unit = stated.map_or_else(|| quantity.unit.clone(), |reading| reading.unit.clone());
         let [low, median, high] = match value {
             Some(Value::Unknown(distribution)) => quantiles_of(distribution),
-            _ => self.quantiles(node),
-        };
-        let (origin, distribution) = match producer {
-            Producer::Given => (Origin::Given, value.map(|value| described(value, &unit))),
-            Producer::Habitat => (Origin::Habitat, value.map(|value| described(value, &unit))),
-            Producer::Default => (Origin::Default, value.map(|value| described(value, &unit))),
-            Producer::Relation(at) => (Origin::Relation(self.catalog.relations[at].entry.id.clone()), None),
-        };
-        let working = match producer {
-            Producer::Relation(at) => {
-                let relation = &self.catalog.relations[at];
-                Some(self.working(&relation.entry, &relation.formula))
-            }
-            _ => None,
+            _ => self.quantiles(*node),
         };
         QuantityResult {
             name: name.to_owned(),
@@ -102,7 +93,7 @@ impl Builder<'_> {
             working,
             role: if free.is_some() { Role::Free } else { Role::Unknown },
             origin,
-            distribution: distribution.unwrap_or_default(),
+            distribution: value.map(|value| value.describe(&unit)).unwrap_or_default(),
             median,
             low,
             high,
@@ -137,11 +128,4 @@ impl Builder<'_> {
 
 fn quantiles_of(distribution: &Distribution) -> [f64; 3] {
     [0.05, 0.5, 0.95].map(|p| distribution.quantile(p))
-}
-
-fn described(value: &Value, unit: &Unit) -> String {
-    match value {
-        Value::Unknown(distribution) => distribution.describe(unit),
-        Value::Free(range) => range.describe(unit),
-    }
 }

@@ -23,7 +23,7 @@ pub use schedule::{Schedule, Step};
 pub use support::{Doubt, Support};
 
 use crate::candidate::Candidate;
-use crate::catalog::{Basis, Catalog, Match, RelationKind};
+use crate::catalog::{Catalog, Match, RelationKind};
 use crate::quantity::Bounds;
 use crate::quantity::written::Value;
 use crate::text::{Problem, Problems};
@@ -39,8 +39,6 @@ pub struct Planned {
     pub required: NodeId,
     /// What it rests on.
     pub support: Support,
-    /// Weakest basis in what it is computed from.
-    pub basis: Basis,
     /// For each free number: which way the margin goes when it grows.
     pub pulls: Vec<Direction>,
 }
@@ -247,7 +245,6 @@ impl Plan {
                 constraint: at,
                 available,
                 required,
-                basis: support.basis,
                 support,
                 pulls,
             })
@@ -320,8 +317,7 @@ fn standing_of<'a>(
     }
     let needed = resolve::attributes_needed(entry, &candidate.attributes);
     groups.extend(needed.into_iter().map(|name| [name.to_owned()].into()));
-    let inputs: Vec<&str> =
-        formulas.iter().flat_map(|formula| resolve::quantities_of(catalog, formula)).collect();
+    let inputs: Vec<&str> = formulas.iter().flat_map(|formula| catalog.quantities_of(formula)).collect();
     groups.extend(resolver.missing(&entry.condition, &inputs));
     if !groups.is_empty() {
         let groups = resolve::minimal(groups);
@@ -352,7 +348,7 @@ fn identities<'a>(
         if !applies {
             continue;
         }
-        let inputs = resolve::quantities_of(catalog, &relation.formula);
+        let inputs = catalog.quantities_of(&relation.formula);
         if !inputs.is_empty() && inputs.iter().all(|input| stated(input)) {
             let stated = compiler.quantity(&relation.gives);
             let derived = compiler.formula(&relation.entry, &relation.formula);

@@ -6,7 +6,6 @@
 use std::collections::{BTreeMap, BTreeSet};
 
 use crate::catalog::{ByAttribute, Catalog, Condition, Entry, Match, Relation, Words};
-use crate::formula::Formula;
 
 /// Where a quantity comes from.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -61,15 +60,6 @@ struct Usable {
     needs: Vec<usize>,
 }
 
-/// The quantities among the names of a formula.
-pub(super) fn quantities_of<'a>(catalog: &'a Catalog, formula: &Formula) -> Vec<&'a str> {
-    formula
-        .names()
-        .iter()
-        .filter_map(|name| catalog.quantities.get_key_value(*name).map(|(name, _)| name.as_str()))
-        .collect()
-}
-
 /// Attributes that would have to be known to give an entry's own numbers their values.
 pub(super) fn attributes_needed<'a>(
     entry: &'a Entry,
@@ -102,7 +92,7 @@ impl<'a> Resolver<'a> {
                 relation: at,
                 rank: relation.rank,
                 gives: position[relation.gives.as_str()],
-                needs: quantities_of(catalog, &relation.formula).iter().map(|name| position[name]).collect(),
+                needs: catalog.quantities_of(&relation.formula).iter().map(|name| position[name]).collect(),
             })
             .collect();
         let known = names
@@ -236,7 +226,7 @@ impl<'a> Resolver<'a> {
             for attribute in attributes_needed(&relation.entry, self.stated.attributes) {
                 needs.insert([attribute.to_owned()].into());
             }
-            let inputs = quantities_of(self.catalog, &relation.formula);
+            let inputs = self.catalog.quantities_of(&relation.formula);
             if inputs.iter().any(|input| above.contains(*input)) {
                 continue;
             }

@@ -2,7 +2,7 @@
 
 use std::collections::BTreeSet;
 
-use super::resolve::{Producer, Resolver, quantities_of};
+use super::resolve::{Producer, Resolver};
 use crate::candidate::Candidate;
 use crate::catalog::{Basis, Catalog, Entry, Provenance, Standing};
 use crate::formula::Formula;
@@ -51,7 +51,7 @@ impl Support {
         };
         support.entry(catalog, entry, candidate);
         let mut waiting: Vec<&str> =
-            formulas.iter().flat_map(|formula| quantities_of(catalog, formula)).collect();
+            formulas.iter().flat_map(|formula| catalog.quantities_of(formula)).collect();
         while let Some(name) = waiting.pop() {
             if !support.quantities.insert(name.to_owned()) {
                 continue;
@@ -63,7 +63,7 @@ impl Support {
                     support.relations.insert(at);
                     support.basis = support.basis.max(relation.entry.basis);
                     support.entry(catalog, &relation.entry, candidate);
-                    waiting.extend(quantities_of(catalog, &relation.formula));
+                    waiting.extend(catalog.quantities_of(&relation.formula));
                 }
                 Some(Producer::Default) => {
                     if let Some(default) = catalog.quantities[name].default.as_ref() {

@@ -4,30 +4,28 @@ use std::collections::{BTreeMap, BTreeSet};
 
 use super::table;
 use crate::catalog::{
-    ByAttribute, Catalog, Clause, Condition, Constraint, Entry, Figure, Of, Parameter, Provenance, Quantity,
+    ByAttribute, Catalog, Condition, Constraint, Entry, Figure, Of, Parameter, Provenance, Quantity,
     Relation, RelationKind,
 };
 use crate::formula::Formula;
 use crate::quantity::shown::{self, Precision};
-use crate::quantity::written::Value;
 use crate::quantity::{Bounds, Dimension, Unit};
+use crate::text::one_line;
 
 /// Whether an entry concerns a body plan; every entry concerns all when none is asked for.
-fn concerns(catalog: &Catalog, entry: &Entry, body_plan: Option<&str>) -> bool {
-    body_plan.is_none_or(|word| {
-        let clause =
-            Clause { attribute: "body_plan".to_owned(), words: vec![word.to_owned()], excluded: false };
-        entry.condition.overlaps(&Condition { clauses: vec![clause] }, &catalog.words())
-    })
+fn concerning(catalog: &Catalog, body_plan: Option<&str>) -> impl Fn(&Entry) -> bool {
+    let asked = body_plan.map(|word| (Condition::asking("body_plan", word), catalog.words()));
+    move |entry| asked.as_ref().is_none_or(|(asked, words)| entry.condition.overlaps(asked, words))
 }
 
 /// A row for each constraint.
 #[must_use]
 pub fn constraints(catalog: &Catalog, body_plan: Option<&str>, width: usize) -> String {
+    let concerns = concerning(catalog, body_plan);
     let rows = catalog
         .constraints
         .iter()
-        .filter(|constraint| concerns(catalog, &constraint.entry, body_plan))
+        .filter(|constraint| concerns(&constraint.entry))
         .map(|constraint| {
             let entry = &constraint.entry;
             vec![entry.id.clone(), entry.family.clone(), entry.basis.to_string(), entry.title.clone()]
@@ -39,10 +37,11 @@ pub fn constraints(catalog: &Catalog, body_plan: Option<&str>, width: usize) -> 
 /// A row for each relation.
 #[must_use]
 pub fn relations(catalog: &Catalog, body_plan: Option<&str>, width: usize) -> String {
+    let concerns = concerning(catalog, body_plan);
     let rows = catalog
         .relations
         .iter()
-        .filter(|relation| concerns(catalog, &relation.entry, body_plan))
+        .filter(|relation| concerns(&relation.entry))
         .map(|relation| {
             let entry = &relation.entry;
             vec![
@@ -61,10 +60,11 @@ pub fn relations(catalog: &Catalog, body_plan: Option<&str>, width: usize) -> St
 /// A row for each figure.
 #[must_use]
 pub fn figures(catalog: &Catalog, body_plan: Option<&str>, width: usize) -> String {
+    let concerns = concerning(catalog, body_plan);
     let rows = catalog
         .figures
         .iter()
-        .filter(|figure| concerns(catalog, &figure.entry, body_plan))
+        .filter(|figure| concerns(&figure.entry))
         .map(|figure| {
             vec![figure.entry.id.clone(), figure.unit.text().to_owned(), figure.entry.title.clone()]
         })
@@ -234,7 +234,7 @@ pub fn show(catalog: &Catalog, id: &str, width: usize) -> Option<String> {
         page.field("Habitat", id);
         page.field("Is", &habitat.about);
         for (name, reading) in &habitat.environment {
-            page.field("", &format!("{name}: {}", described(&reading.value, &reading.unit)));
+            page.field("", &format!("{name}: {}", reading.value.describe(&reading.unit)));
         }
         page.sources(catalog, &habitat.sources);
     } else if catalog.works.contains_key(id) {
@@ -253,10 +253,6 @@ pub fn show(catalog: &Catalog, id: &str, width: usize) -> Option<String> {
 
 fn exact(si: f64, unit: &Unit) -> String {
     shown::in_unit(si, Precision::UpTo(6), unit)
-}
-
-fn one_line(text: &str) -> String {
-    text.split_whitespace().collect::<Vec<_>>().join(" ")
 }
 
 /// Labelled lines, wrapped behind their label.
@@ -362,13 +358,6 @@ fn provenance_text(provenance: &Provenance) -> String {
     if parts.is_empty() { String::new() } else { format!(" [{}]", parts.join(", ")) }
 }
 
-fn described(value: &Value, unit: &Unit) -> String {
-    match value {
-        Value::Unknown(distribution) => distribution.describe(unit),
-        Value::Free(range) => range.describe(unit),
-    }
-}
-
 fn show_constraint(page: &mut Page, catalog: &Catalog, constraint: &Constraint) {
     page.field("Constraint", &constraint.entry.id);
     page.field(
@@ -416,11 +405,11 @@ fn show_quantity(page: &mut Page, catalog: &Catalog, quantity: &Quantity) {
         let behind = format!(" [{}{}]", default.basis, provenance_text(&default.provenance));
         match &default.value {
             ByAttribute::One(value) => {
-                page.field("Default", &format!("{}{behind}", described(value, &quantity.unit)))
+                page.field("Default", &format!("{}{behind}", value.describe(&quantity.unit)))
             }
             ByAttribute::By { attribute, cases } => {
                 for (number, (word, value)) in cases.iter().enumerate() {
-                    let text = format!("{attribute} {word}: {}{behind}", described(value, &quantity.unit));
+                    let text = format!("{attribute} {word}: {}{behind}", value.describe(&quantity.unit));
                     page.field(if number == 0 { "Default" } else { "" }, &text);
                 }
             }

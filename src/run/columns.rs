@@ -4,15 +4,6 @@ use crate::formula::Function;
 use crate::math::kernels::{self, Comparison, Operand};
 use crate::plan::Arithmetic;
 
-/// One row of an operand.
-#[inline]
-fn row(operand: Operand<'_>, at: usize) -> f64 {
-    match operand {
-        Operand::Column(column) => column[at],
-        Operand::Scalar(value) => value,
-    }
-}
-
 /// Copies an operand.
 pub(super) fn copy(out: &mut [f64], operand: Operand<'_>) {
     match operand {
@@ -73,7 +64,7 @@ fn power(out: &mut [f64], base: Operand<'_>, exponent: Operand<'_>) {
         (Operand::Column(base), Operand::Scalar(exponent)) => kernels::pow_scalar_column(out, base, exponent),
         (Operand::Scalar(base), _) => {
             for (at, out) in out.iter_mut().enumerate() {
-                *out = kernels::pow(base, row(exponent, at));
+                *out = kernels::pow(base, exponent.at(at));
             }
         }
     }
@@ -81,7 +72,7 @@ fn power(out: &mut [f64], base: Operand<'_>, exponent: Operand<'_>) {
 
 fn logic(out: &mut [f64], a: Operand<'_>, b: Operand<'_>, f: impl Fn(bool, bool) -> bool) {
     for (at, out) in out.iter_mut().enumerate() {
-        *out = if f(row(a, at) != 0.0, row(b, at) != 0.0) { 1.0 } else { 0.0 };
+        *out = if f(a.at(at) != 0.0, b.at(at) != 0.0) { 1.0 } else { 0.0 };
     }
 }
 

@@ -245,7 +245,7 @@ impl<'a> Search<'a> {
         let mut strong = [u64::MAX; BLOCK / 64];
         let mut all = [u64::MAX; BLOCK / 64];
         for (planned, bits) in self.plan.constraints.iter().zip(&self.holds) {
-            let is_strong = planned.basis < Basis::Empirical;
+            let is_strong = planned.support.basis < Basis::Empirical;
             for ((strong, all), bits) in strong.iter_mut().zip(&mut all).zip(bits) {
                 *all &= bits;
                 if is_strong {

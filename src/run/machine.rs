@@ -2,7 +2,7 @@
 
 use crate::math::kernels::{self, Comparison, Operand};
 use crate::math::streams::Stream;
-use crate::plan::{Level, NodeId, Op, Plan, Step, lookup};
+use crate::plan::{NodeId, Op, Plan, Step, lookup};
 
 use super::case::Case;
 use super::columns;
@@ -112,9 +112,4 @@ pub(super) fn compute<'a>(
 /// Keeps a probability strictly inside (0, 1), as quantile functions ask.
 fn inside_unit(p: f64) -> f64 {
     p.clamp(f64::MIN_POSITIVE, 1.0 - f64::EPSILON / 2.0)
-}
-
-/// Whether a node has a value for each draw.
-pub(super) fn is_column(plan: &Plan, node: NodeId) -> bool {
-    matches!(plan.graph.nodes[node].level, Level::Shared | Level::Case)
 }

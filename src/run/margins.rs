@@ -34,17 +34,10 @@ fn bits(holds: &mut [u64], draws: usize, has: impl Fn(usize) -> f64, needs: impl
 pub(super) fn ratios(available: Operand<'_>, required: Operand<'_>, out: &mut [f64]) {
     kernels::binary_column(Arithmetic::Divide, out, available, required);
     for (at, ratio) in out.iter_mut().enumerate() {
-        let (has, needs) = (row(available, at), row(required, at));
+        let (has, needs) = (available.at(at), required.at(at));
         if !(has > 0.0 && needs > 0.0) {
             *ratio = kernels::pow(10.0, special(has, needs));
         }
-    }
-}
-
-fn row(operand: Operand<'_>, at: usize) -> f64 {
-    match operand {
-        Operand::Column(column) => column[at],
-        Operand::Scalar(value) => value,
     }
 }
 
@@ -64,13 +57,13 @@ pub(super) fn margins(
     kernels::binary_column(Arithmetic::Divide, scratch, available, required);
     kernels::log10_column(out, scratch);
     // The ratio of two positive finite numbers is mostly an ordinary number; what is not is settled one by one.
-    let plain = |at: usize| row(available, at) > 0.0 && row(required, at) > 0.0 && scratch[at].is_normal();
+    let plain = |at: usize| available.at(at) > 0.0 && required.at(at) > 0.0 && scratch[at].is_normal();
     if (0..draws).fold(true, |all, at| all & plain(at)) {
         return;
     }
     for (at, margin) in out.iter_mut().enumerate() {
         if !plain(at) {
-            *margin = special(row(available, at), row(required, at));
+            *margin = special(available.at(at), required.at(at));
         }
     }
 }

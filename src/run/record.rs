@@ -1,6 +1,5 @@
 //! What is kept of the draws: margins of every draw, other values of the first ones.
 
-use super::machine::BLOCK;
 use crate::math::quantiles;
 
 /// One block of draws of one case.
@@ -45,38 +44,35 @@ impl Record {
     /// The bits of a constraint: whether it holds, draw by draw.
     #[must_use]
     pub fn holds(&self, constraint: usize) -> Vec<u64> {
-        let mut bits = Vec::with_capacity(self.draws.div_ceil(64));
-        for part in &self.parts {
-            let words = part.draws.div_ceil(64);
-            bits.extend_from_slice(&part.holds[constraint * words..][..words]);
-        }
-        bits
+        self.bits(constraint).collect::<Vec<_>>().concat()
     }
 
     /// How many draws of a constraint hold.
     #[must_use]
     pub fn holding(&self, constraint: usize) -> u64 {
-        self.holds(constraint).into_iter().map(|word| u64::from(word.count_ones())).sum()
+        self.bits(constraint).flatten().map(|word| u64::from(word.count_ones())).sum()
+    }
+
+    /// The bits of a constraint, block by block.
+    fn bits(&self, constraint: usize) -> impl Iterator<Item = &[u64]> {
+        self.parts.iter().map(move |part| {
+            let words = part.draws.div_ceil(64);
+            &part.holds[constraint * words..][..words]
+        })
     }
 
     /// The margins of a constraint in the order of draws, dex.
     #[must_use]
     pub fn margins(&self, constraint: usize) -> Vec<f32> {
-        let mut margins = Vec::with_capacity(self.draws);
-        for part in &self.parts {
-            margins.extend_from_slice(&part.margins[constraint * part.draws..][..part.draws]);
-        }
-        margins
+        let parts = self.parts.iter().map(|part| &part.margins[constraint * part.draws..][..part.draws]);
+        parts.collect::<Vec<_>>().concat()
     }
 
     /// The values of a kept node in the first draws.
     #[must_use]
     pub(super) fn kept(&self, position: usize) -> Vec<f64> {
-        let mut values = Vec::with_capacity(self.draws.min(16 * BLOCK));
-        for part in self.parts.iter().filter(|part| !part.kept.is_empty()) {
-            values.extend_from_slice(&part.kept[position * part.draws..][..part.draws]);
-        }
-        values
+        let keeping = self.parts.iter().filter(|part| !part.kept.is_empty());
+        keeping.map(|part| &part.kept[position * part.draws..][..part.draws]).collect::<Vec<_>>().concat()
     }
 }
 

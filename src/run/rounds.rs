@@ -9,7 +9,7 @@ use rayon::iter::{
 };
 
 use super::case::Case;
-use super::machine::{BLOCK, Machine, is_column, streams};
+use super::machine::{BLOCK, Machine, streams};
 use super::margins::margins;
 use super::record::{Part, Record, not_a_number, ranks};
 use crate::math::kernels::{self, Operand};
@@ -113,7 +113,8 @@ pub fn interval_ranks(n: usize) -> [usize; 3] {
 #[must_use]
 pub fn run(plan: &Plan, cases: &[Case], settings: Settings) -> Vec<Outcome> {
     let streams = streams(plan, settings.seed);
-    let nodes: Vec<NodeId> = plan.outputs().into_iter().filter(|node| is_column(plan, *node)).collect();
+    let nodes: Vec<NodeId> =
+        plan.outputs().into_iter().filter(|node| plan.graph.nodes[*node].level.is_column()).collect();
     let mut outcomes: Vec<Outcome> = cases
         .iter()
         .map(|_| Outcome {

@@ -3,8 +3,8 @@
 use std::collections::{BTreeMap, BTreeSet};
 use std::fmt::Write as _;
 
-use crate::catalog::{Catalog, Clause, Condition, Entry, Of};
-use crate::formula::Formula;
+use crate::catalog::{Catalog, Condition, Entry, Of};
+use crate::text::one_line;
 
 /// A commented candidate for a body plan, as YAML that reads back without problems.
 #[must_use]
@@ -41,7 +41,7 @@ pub fn draft(catalog: &Catalog, body_plan: &str) -> String {
         for (name, limits) in names {
             let quantity = &catalog.quantities[name];
             let unit = quantity.unit.text();
-            let about = quantity.about.split_whitespace().collect::<Vec<_>>().join(" ");
+            let about = one_line(&quantity.about);
             let assumed = if quantity.default.is_some() { "; assumed when not stated" } else { "" };
             line(&format!("  # {name}: _ {unit}   # {about}; limits opened: {limits}{assumed}"));
         }
@@ -49,30 +49,19 @@ pub fn draft(catalog: &Catalog, body_plan: &str) -> String {
     text
 }
 
-/// The condition that says only the body plan.
-fn asking(body_plan: &str) -> Condition {
-    Condition {
-        clauses: vec![Clause {
-            attribute: "body_plan".to_owned(),
-            words: vec![body_plan.to_owned()],
-            excluded: false,
-        }],
-    }
-}
-
 /// Quantities that limits of the body plan can use, each with the ids of those limits.
 #[must_use]
 pub fn opens(catalog: &Catalog, body_plan: &str) -> BTreeMap<String, BTreeSet<String>> {
     let words = catalog.words();
-    let asked = asking(body_plan);
+    let asked = Condition::asking("body_plan", body_plan);
     let concerns = |entry: &Entry| entry.condition.overlaps(&asked, &words);
     let mut opens: BTreeMap<String, BTreeSet<String>> = BTreeMap::new();
     for constraint in catalog.constraints.iter().filter(|constraint| concerns(&constraint.entry)) {
-        let mut waiting = names(catalog, &constraint.available.formula);
-        waiting.extend(names(catalog, &constraint.required.formula));
+        let mut waiting = catalog.quantities_of(&constraint.available.formula);
+        waiting.extend(catalog.quantities_of(&constraint.required.formula));
         let mut seen = BTreeSet::new();
         while let Some(name) = waiting.pop() {
-            if !seen.insert(name.clone()) {
+            if !seen.insert(name) {
                 continue;
             }
             for relation in &catalog.relations {
@@ -80,28 +69,19 @@ pub fn opens(catalog: &Catalog, body_plan: &str) -> BTreeMap<String, BTreeSet<St
                     && relation.entry.condition.overlaps(&constraint.entry.condition, &words)
                     && concerns(&relation.entry);
                 if fits {
-                    waiting.extend(names(catalog, &relation.formula));
+                    waiting.extend(catalog.quantities_of(&relation.formula));
                 }
             }
-            opens.entry(name).or_default().insert(constraint.entry.id.clone());
+            opens.entry(name.to_owned()).or_default().insert(constraint.entry.id.clone());
         }
     }
     opens
 }
 
-fn names(catalog: &Catalog, formula: &Formula) -> Vec<String> {
-    formula
-        .names()
-        .iter()
-        .map(|name| name.to_string())
-        .filter(|name| catalog.quantities.contains_key(name))
-        .collect()
-}
-
 /// Attributes that entries of the body plan ask for, the most asked first.
 fn attributes_used(catalog: &Catalog, body_plan: &str) -> Vec<(String, usize)> {
     let words = catalog.words();
-    let asked = asking(body_plan);
+    let asked = Condition::asking("body_plan", body_plan);
     let mut counts: BTreeMap<String, usize> = BTreeMap::new();
     for entry in catalog.entries().filter(|entry| entry.condition.overlaps(&asked, &words)) {
         for clause in entry.condition.clauses.iter().filter(|clause| clause.attribute != "body_plan") {

@@ -13,5 +13,5 @@ pub use fields::Fields;
 pub use node::{Kind, Node, Scalar};
 pub use problems::{Fault, Problem, Problems, nearest};
 pub use reading::{MOST_BYTES, neighbour};
-pub use rendering::{shortened, visible};
+pub use rendering::{one_line, shortened, visible};
 pub use source::{Place, Source, Span};

@@ -102,6 +102,12 @@ impl fmt::Display for Problem {
     }
 }
 
+/// A text that may be folded over lines in its file, on one line.
+#[must_use]
+pub fn one_line(text: &str) -> String {
+    text.split_whitespace().collect::<Vec<_>>().join(" ")
+}
+
 /// A text on one line that cannot disturb a terminal: control characters become their pictures (`␛`), characters that
 /// change the direction of text or take no room become their numbers (`<U+202E>`).
 #[must_use]

@@ -11,6 +11,18 @@ pub enum Operand<'a> {
     Scalar(f64),
 }
 
+impl Operand<'_> {
+    /// The number of one row.
+    #[must_use]
+    #[inline(always)]
+    pub fn at(self, row: usize) -> f64 {
+        match self {
+            Self::Column(column) => column[row],
+            Self::Scalar(value) => value,
+        }
+    }
+}
+
 /// Operations of two numbers.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
 pub enum Arithmetic {

@@ -48,7 +48,7 @@ impl Objective {
         let joint = |strong: bool| {
             let held = |draw: usize| {
                 ready.plan.constraints.iter().enumerate().all(|(at, planned)| {
-                    strong && planned.basis == Basis::Empirical
+                    strong && planned.support.basis == Basis::Empirical
                         || outcome.record.holds(at)[draw / 64] >> (draw % 64) & 1 == 1
                 })
             };
